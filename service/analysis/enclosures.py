@@ -1,0 +1,109 @@
+"""Certified enclosures of all complex roots of a squarefree integer polynomial.
+
+Guesses come from a floating-point eigenvalue computation and are improved by Newton's method; where
+they crowd, ``clusters`` moves them apart. None of this proves anything. The proof is the classical one:
+the disc round z of radius n |p(z)/p'(z)| holds a root, so n disjoint discs hold one root each
+(P. Henrici, Applied and Computational Complex Analysis, vol. 1, section 6.4). A disc centred on the
+real axis that is disjoint from all others holds a real root.
+"""
+
+from collections.abc import Iterator
+from dataclasses import dataclass
+from typing import Final
+
+from flint import acb, arb, fmpz_poly
+
+from service.analysis.clusters import Guess, joined, proven_radius, separate
+from service.analysis.errors import TooHard
+from service.analysis.guesses import exactly, guess_roots
+from service.analysis.precision import working
+
+_NEWTON_STEPS: Final = 3
+_HIGHEST_BITS: Final = 1 << 15
+_NUDGE: Final = acb(1, 2**-8)
+"""Turns guesses off the real axis, on which a double guess could never part into a conjugate pair."""
+
+
+@dataclass(frozen=True, slots=True)
+class Disc:
+    """A disc with exact centre, the upper one of a mirrored pair where the centre is not real."""
+
+    centre: acb
+    radius: arb
+
+    @property
+    def points(self) -> int:
+        """How many roots the disc stands for: itself and, off the real axis, its mirror image."""
+        return 1 if self.centre.imag == 0 else 2
+
+    def settled(self, bits: int) -> bool:
+        """Whether the radius is below 2^-bits times the distance of the centre from 0."""
+        return bool(self.radius.is_finite() and self.radius * (1 << bits) < abs(self.centre))
+
+    def balls(self) -> Iterator[acb]:
+        """Yield a ball round the disc, and its mirror image."""
+        around = arb(0, self.radius)
+        if self.points == 1:
+            yield acb(self.centre.real + around)
+        else:
+            ball = acb(self.centre.real + around, self.centre.imag + around)
+            yield ball
+            yield ball.conjugate()
+
+
+def enclose_roots(p: fmpz_poly, bits: int) -> list[acb]:
+    """Enclose every root of p in a ball of its own, radius below 2^-bits of the distance from 0.
+
+    p is squarefree with p(0) != 0. Real roots have an exactly zero imaginary part, the others come in
+    conjugate pairs.
+
+    Raises TooHard where the roots cannot be told apart at the highest precision.
+    """
+    eigenvalues, exponent = guess_roots(p)
+    centres = [exactly(u, exponent) for u in eigenvalues.tolist()]
+    precision = bits + 64
+    found = _proven(p, [z for z in centres if z.imag >= 0], bits, precision)
+    precision += p.height_bits()
+    guesses = [Guess((z * _NUDGE).mid(), arb.pos_inf()) for z in centres]
+    while found is None and precision < _HIGHEST_BITS:
+        guesses, apart = separate(p, guesses, bits, precision)
+        if apart:
+            found = _proven(p, _upper(guesses), bits, precision)
+        precision *= 2
+    if found is None:
+        raise TooHard(
+            f"The closed-loop poles lie so close together that {precision} bits do not tell them apart."
+        )
+    return [ball for disc in found for ball in disc.balls()]
+
+
+def _upper(guesses: list[Guess]) -> list[acb]:
+    """Return the points above the real axis and, made real, those within their radius of it."""
+    level = [not abs(g.at.imag) > g.radius for g in guesses]
+    return [
+        acb(g.at.real) if real else g.at
+        for g, real in zip(guesses, level, strict=True)
+        if real or g.at.imag > 0
+    ]
+
+
+def _proven(p: fmpz_poly, centres: list[acb], bits: int, precision: int) -> list[Disc] | None:
+    """Improve the centres and return their discs where these are proven to hold all roots, one each."""
+    with working(precision):
+        derivative = p.derivative()
+        discs = [_improved(p, derivative, z) for z in centres]
+        if sum(d.points for d in discs) != p.degree() or not all(d.settled(bits) for d in discs):
+            return None
+        images = [d.centre for d in discs] + [d.centre.conjugate() for d in discs if d.points > 1]
+        radii = [d.radius for d in discs] + [d.radius for d in discs if d.points > 1]
+        return discs if len(joined(images, radii)) == p.degree() else None
+
+
+def _improved(p: fmpz_poly, derivative: fmpz_poly, centre: acb) -> Disc:
+    z = centre
+    for _ in range(_NEWTON_STEPS):
+        step = p(z) / derivative(z)
+        if not step.is_finite():
+            break
+        z = (z - step).mid()
+    return Disc(z, proven_radius(p, derivative, z))

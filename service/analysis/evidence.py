@@ -1,0 +1,109 @@
+"""What a third party needs to re-derive the verdicts with rational arithmetic alone.
+
+Intervals round irrational values are [m/2^k, (m+1)/2^k]: of 64 significant bits round a gain and of 192
+round a squared frequency, twice as many as often as needed for the intervals to be disjoint and for
+interval arithmetic to bracket each gain.
+"""
+
+from functools import partial
+from typing import Final
+
+from flint import fmpq, fmpz_poly
+
+from service.analysis.answer import BandEvidence, EdgeEvidence, Evidence
+from service.analysis.bands import Cell, dyadic_cell, separate_cells
+from service.analysis.edges import ORIGIN, Place, RawEdge
+from service.analysis.loop import AxisView
+from service.analysis.polynomials import descending
+from service.analysis.roots import PositiveRoot, by_frequency
+from service.analysis.survey import Survey
+
+_SQUARE_BITS: Final = 192
+_SPARE: Final = 1 << 16  # by how much the bracket of a gain is narrower than the interval that holds it
+
+
+def gather(survey: Survey) -> Evidence:
+    """Gather the evidence in the order of edges and bands."""
+    squares = _square_cells(survey)
+    return Evidence(
+        edges=tuple(
+            EdgeEvidence(
+                gain_between=_texts(cell),
+                omega_squared_between=tuple(_place_evidence(place, squares) for place in edge.places),
+                gain_polynomial=_gain_polynomial(edge),
+            )
+            for edge, cell in zip(survey.edges, survey.cells, strict=True)
+        ),
+        bands=tuple(
+            BandEvidence(None if span.empty else str(band.sample))
+            for span, band in zip(survey.spans, survey.bands, strict=True)
+        ),
+    )
+
+
+def _texts(cell: Cell) -> tuple[str, str]:
+    return str(cell[0]), str(cell[1])
+
+
+def _place_evidence(place: Place, squares: dict[int, Cell]) -> tuple[str, str] | None:
+    if isinstance(place, PositiveRoot):
+        return _texts(squares[id(place)])
+    return ("0", "0") if place == ORIGIN else None
+
+
+def _gain_polynomial(edge: RawEdge) -> tuple[str, ...] | None:
+    irrational = any(isinstance(p, PositiveRoot) and p.rational is None for p in edge.places)
+    if len(edge.places) > 1 or (irrational and edge.gain.rational is not None):
+        return tuple(str(c) for c in descending(edge.gain.minimal_polynomial))
+    return None
+
+
+def _square_cells(survey: Survey) -> dict[int, Cell]:
+    """Return an interval for each positive squared frequency, by the identity of its root."""
+    view = AxisView.of(survey.loop.numerator, survey.loop.denominator)
+    wanted = [
+        (place, cell if edge.gain.rational is None and len(edge.places) == 1 else None)
+        for edge, cell in zip(survey.edges, survey.cells, strict=True)
+        for place in edge.places
+        if isinstance(place, PositiveRoot)
+    ]
+    wanted.sort(key=lambda pair: by_frequency(pair[0]))
+    makers = [partial(_square_cell, view, root, cell) for root, cell in wanted]
+    cells = separate_cells(makers, _SQUARE_BITS)
+    return {id(root): cell for (root, _), cell in zip(wanted, cells, strict=True)}
+
+
+def _square_cell(view: AxisView, root: PositiveRoot, gain_cell: Cell | None, bits: int) -> Cell:
+    x = root.rational
+    if x is not None:
+        return x, x
+    while True:
+        cell = dyadic_cell(root.ball, bits)
+        if gain_cell is None or _brackets(view, cell, gain_cell):
+            return cell
+        bits *= 2
+
+
+def _brackets(view: AxisView, square: Cell, gain: Cell) -> bool:
+    """Whether interval arithmetic puts K well inside its interval.
+
+    With K = -(De Ne + x Do No)/(Ne^2 + x No^2), every power of x taken apart: no scheme does worse.
+    """
+    x = fmpz_poly([0, 1])
+    ne, no = view.numerator_even, view.numerator_odd
+    above = _range(-(view.denominator_even * ne + x * view.denominator_odd * no), square)
+    below = _range(ne * ne + x * no * no, square)
+    if below[0] <= 0:
+        return False
+    ends = [a / b for a in above for b in below]
+    low, high = min(ends), max(ends)
+    spare = (high - low) * _SPARE
+    return bool(gain[0] < low - spare and high + spare < gain[1])
+
+
+def _range(p: fmpz_poly, x: Cell) -> Cell:
+    """Bound p over an interval of positive x, term by term."""
+    coefficients = p.coeffs()
+    positive = fmpz_poly([c * (c > 0) for c in coefficients])
+    negative = fmpz_poly([c * (c < 0) for c in coefficients])
+    return fmpq(positive(x[0]) + negative(x[1])), fmpq(positive(x[1]) + negative(x[0]))

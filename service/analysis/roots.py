@@ -1,0 +1,246 @@
+"""Positive real roots of an integer polynomial: isolated exactly, refined on demand.
+
+Isolation is by Descartes' rule of signs on intervals (G. E. Collins and A. G. Akritas, 1976), with the
+cuts placed where a floating-point root finder expects roots. The guesses decide nothing: an interval
+counts only by its sign changes, so a bad guess costs time and never a root. Only real positive roots
+are separated, never complex ones, whose clusters can be arbitrarily expensive. Refinement is the
+interval Newton step in ball arithmetic (R. E. Moore, Interval Analysis, 1966).
+"""
+
+from collections.abc import Iterator
+from functools import cmp_to_key
+
+import numpy as np
+from flint import arb, fmpq, fmpz, fmpz_poly
+
+from service.analysis.guesses import guess_roots
+from service.analysis.polynomials import sign, sign_variations
+from service.analysis.precision import accurate_bits, ends, working
+
+_ALMOST_REAL = 1e-3  # a guess this near to the real axis may stand for a real root
+_SPREADS = (32, 14)  # bits: half width of the interval tried round a guess, relative to it
+
+
+class PositiveRoot:
+    """The one root of a squarefree polynomial in the open interval (low, high), low > 0.
+
+    The ends are no roots, unless they agree: then they are the root itself. Asking for more accuracy
+    narrows what is known; the root stays the same.
+    """
+
+    __slots__ = ("_ball", "_derivative", "_settled", "high", "low", "polynomial")
+
+    def __init__(self, polynomial: fmpz_poly, low: fmpq, high: fmpq) -> None:
+        self.polynomial = polynomial
+        self.low = low
+        self.high = high
+        self._ball: arb | None = None
+        self._derivative = polynomial.derivative()
+        self._settled = low == high
+
+    @property
+    def rational(self) -> fmpq | None:
+        """The root where it is rational, else None: decided exactly.
+
+        A rational root times the leading coefficient is an integer.
+        """
+        if not self._settled:
+            lead = self.polynomial.leading_coefficient()
+            bits = lead.height_bits() + max(0, self.high.height_bits()) + 4
+            ball = self.ball(bits)
+            with working(2 * bits + 16):
+                whole = (ball * lead).unique_fmpz()
+            if whole is not None:
+                candidate = fmpq(whole, lead)
+                if self.polynomial(candidate) == 0:
+                    self.low = self.high = candidate
+            self._settled = True
+        return self.low if self.low == self.high else None
+
+    def ball(self, bits: int) -> arb:
+        """Enclose the root in a ball of at least ``bits`` accurate bits."""
+        if self.low == self.high:
+            with working(bits + 8):
+                return arb(self.low)
+        ball = self._ball
+        if ball is None:
+            with working(max(64, 2 * self.low.height_bits(), 2 * self.high.height_bits())):
+                ball = arb(self.low).union(arb(self.high))
+        headroom = 32 + self.polynomial.degree()
+        while (known := accurate_bits(ball)) < bits:
+            with working(2 * known + headroom):
+                narrower = self._newton(ball)
+            if narrower is None or accurate_bits(narrower) <= known:
+                ball = self._bisect(ball)
+                headroom *= 2
+            else:
+                ball = narrower
+            if self.low == self.high:
+                return self.ball(bits)
+        self._ball = ball
+        return ball
+
+    def _newton(self, ball: arb) -> arb | None:
+        slope = self._derivative(ball)
+        if not slope.is_finite() or slope.contains(0):
+            return None
+        middle = ball.mid()
+        return (middle - self.polynomial(middle) / slope).intersection(ball)
+
+    def _bisect(self, ball: arb) -> arb:
+        """Halve what is known by an exact sign, at a cut near the middle of the ball."""
+        with working(2 * accurate_bits(ball) + 64):
+            lowest, highest = ends(ball)
+            low, high = max(self.low, lowest), min(self.high, highest)
+            cut = short_between(low, high)
+            at_cut = sign(self.polynomial(cut))
+            if at_cut == 0:
+                self.low = self.high = cut
+            elif at_cut == sign(self.polynomial(self.low)):
+                self.low, self.high = cut, high if sign(self.polynomial(high)) != at_cut else self.high
+            else:
+                self.low, self.high = low if sign(self.polynomial(low)) == -at_cut else self.low, cut
+            return arb(self.low).union(arb(self.high))
+
+
+def compare_roots(one: PositiveRoot, other: PositiveRoot) -> int:
+    """Order two roots, of one polynomial or of coprime ones: -1, 1, or 0 for the very same."""
+    bits = 32
+    while one is not other:
+        a, b = one.ball(bits), other.ball(bits)
+        if a < b:
+            return -1
+        if a > b:
+            return 1
+        bits *= 2
+    return 0
+
+
+by_frequency = cmp_to_key(compare_roots)
+"""Sort key of a root."""
+
+
+def short_between(low: fmpq, high: fmpq) -> fmpq:
+    """Return a short dyadic in the middle of (low, high), 0 < low < high; geometrically where wide."""
+    if 4 * low < high:
+        a, b = floor_log2(low), floor_log2(high)
+        return power_of_two((a + b + 1) // 2)
+    width = high - low
+    scale = 2 - floor_log2(width)
+    unit = power_of_two(-scale)
+    return fmpq((((low + high) / 2) / unit).floor()) * unit
+
+
+def floor_log2(value: fmpq) -> int:
+    """Return the k with 2^k <= value < 2^(k+1), value > 0."""
+    k = int(value.numer().bit_length()) - int(value.denom().bit_length())
+    return k if power_of_two(k) <= value else k - 1
+
+
+def power_of_two(exponent: int) -> fmpq:
+    """Return 2^exponent exactly."""
+    return fmpq(1 << exponent, 1) if exponent >= 0 else fmpq(1, 1 << -exponent)
+
+
+def isolate_positive(p: fmpz_poly) -> list[PositiveRoot]:
+    """Isolate the positive real roots of a squarefree p with p(0) != 0, in ascending order.
+
+    Examples
+    --------
+    >>> [root.rational for root in isolate_positive(fmpz_poly([2, -3, 1]))]
+    [1, 2]
+
+    """
+    variations = sign_variations(p)
+    if variations == 0:
+        return []
+    if p.degree() == 1:
+        value = -fmpq(p[0], p[1])
+        return [PositiveRoot(p, value, value)]
+    brackets = list(_guessed_brackets(p))
+    if len(brackets) < variations:
+        brackets = list(_completed(p, brackets))
+    return [PositiveRoot(p, low, high) for low, high in brackets]
+
+
+def count_positive(p: fmpz_poly) -> int:
+    """Count the positive real roots of a squarefree p with p(0) != 0."""
+    return len(isolate_positive(p))
+
+
+def _guessed_brackets(p: fmpz_poly) -> Iterator[tuple[fmpq, fmpq]]:
+    """Yield disjoint ascending intervals in which p certainly changes sign, where guesses expect a root."""
+    last = fmpq(0)
+    for guess in _guesses(p):
+        for spread in _SPREADS:
+            low, high = _around(guess, spread)
+            if low > last and sign(p(low)) * sign(p(high)) < 0:
+                yield low, high
+                last = high
+                break
+
+
+def _around(guess: fmpq, spread: int) -> tuple[fmpq, fmpq]:
+    unit = power_of_two(floor_log2(guess) - spread)
+    whole = fmpq((guess / unit).floor())
+    return (whole - 1) * unit, (whole + 2) * unit
+
+
+def _guesses(p: fmpz_poly) -> list[fmpq]:
+    """Guess the positive real roots, ascending."""
+    found, exponent = guess_roots(p)
+    scale = power_of_two(exponent)
+    near = found.real[(np.abs(found.imag) <= _ALMOST_REAL * found.real) & (found.real > 0)]
+    return [fmpq(*u.as_integer_ratio()) * scale for u in sorted({float(u) for u in near})]
+
+
+def _completed(p: fmpz_poly, brackets: list[tuple[fmpq, fmpq]]) -> Iterator[tuple[fmpq, fmpq]]:
+    """Yield intervals with exactly one root each, all of them: brackets and what lies between."""
+    start, stop = _root_bounds(p)
+    last = start
+    for low, high in brackets:
+        yield from _within(p, last, max(low, last))
+        yield from _within(p, low, high)
+        last = high
+    yield from _within(p, last, max(stop, last))
+
+
+def _root_bounds(p: fmpz_poly) -> tuple[fmpq, fmpq]:
+    """Return powers of two strictly below and above every positive root (Fujiwara's bound, 1916)."""
+    bits = [c.height_bits() for c in p.coeffs()]
+    top = len(bits) - 1
+    above = max(-((bits[top] - 1 - b) // (top - i)) for i, b in enumerate(bits[:-1]) if b)
+    below = max(-((bits[0] - 1 - b) // i) for i, b in enumerate(bits) if i and b)
+    return power_of_two(-below - 2), power_of_two(above + 2)
+
+
+def _within(p: fmpz_poly, low: fmpq, high: fmpq) -> Iterator[tuple[fmpq, fmpq]]:
+    """Yield isolating intervals for the roots in the open interval (low, high), 0 < low <= high."""
+    if low >= high:
+        return
+    variations = _variations_within(p, low, high)
+    if variations == 0:
+        return
+    if variations == 1 and p(low) != 0 and p(high) != 0:
+        yield low, high
+        return
+    cut = short_between(low, high)
+    yield from _within(p, low, cut)
+    if p(cut) == 0:
+        yield cut, cut
+    yield from _within(p, cut, high)
+
+
+def _variations_within(p: fmpz_poly, low: fmpq, high: fmpq) -> int:
+    """Bound the roots in (low, high) by the sign variations of (1+t)^n p((low + high t)/(1 + t))."""
+    denominator = fmpz(low.denom().lcm(high.denom()))
+    a = int(low.numer() * (denominator // low.denom()))
+    width = int(high.numer() * (denominator // high.denom())) - a
+    scaled, power = [], fmpz(1)
+    for c in reversed(p.coeffs()):
+        scaled.append(c * power)
+        power *= denominator
+    shifted = fmpz_poly(scaled[::-1])(fmpz_poly([a, width]))
+    coefficients = shifted.coeffs()
+    coefficients += [fmpz(0)] * (p.degree() + 1 - len(coefficients))
+    return sign_variations(fmpz_poly(coefficients[::-1])(fmpz_poly([1, 1])))

@@ -1,0 +1,1 @@
+"""The HTTP service: routes that read a request, ask once, and write what came."""
