@@ -58,7 +58,7 @@ class Poly(tuple[Any, ...]):  # noqa: SLOT001 - few are made
         while len(rest) >= len(other):
             term = Poly([0] * (len(rest) - len(other)) + [-rest[-1] * other[-1]])
             rest = rest * Poly((other[-1] ** 2,)) + other * term
-        return Poly(-c // gcd(*rest) for c in rest)
+        return Poly(-c // content for c in rest) if (content := gcd(*rest)) else rest
 
     def __floordiv__(self, other: "Poly") -> "Poly":
         """Divide by a divisor that has no common divisor of its coefficients."""
@@ -82,7 +82,7 @@ class Poly(tuple[Any, ...]):  # noqa: SLOT001 - few are made
     def shared(self, g: "Poly") -> "Poly":
         """Give the greatest common divisor, its leading coefficient positive."""
         last = self.chain(g)[-1]
-        return Poly(c // gcd(*last) * (-1) ** (last[-1] < 0) for c in last)
+        return Poly(c // content for c in last) if (content := gcd(*last) * (-1) ** (last[-1] < 0)) else last
 
     def levels(self) -> list["Poly"]:
         """Give polynomials: a root of multiplicity m is one of the first m of them; the last is constant."""
@@ -386,7 +386,7 @@ def main(paths: list[str]) -> int:
     try:
         question, answer = (Path(path).read_text("utf-8") for path in paths)
         loop = Loop(json.loads(question, object_pairs_hook=unique, parse_int=str, parse_float=str))
-        document = json.loads(answer, object_pairs_hook=unique, parse_int=float)
+        document = {**json.loads(answer, object_pairs_hook=unique, parse_int=float)}
         code = 1
         faults = [*differences("", document, due(loop, document))]
     except Exception as fault:  # noqa: BLE001 - whatever goes wrong, nothing is believed

@@ -31,24 +31,19 @@ class Disc:
     centre: acb
     radius: arb
 
-    @property
-    def points(self) -> int:
-        """How many roots the disc stands for: itself and, off the real axis, its mirror image."""
-        return 1 if self.centre.imag == 0 else 2
+    def images(self) -> tuple[acb, ...]:
+        """Return the centre and, off the real axis, its mirror image."""
+        return (self.centre,) if self.centre.imag == 0 else (self.centre, self.centre.conjugate())
 
     def settled(self, bits: int) -> bool:
         """Whether the radius is below 2^-bits times the distance of the centre from 0."""
         return bool(self.radius.is_finite() and self.radius * (1 << bits) < abs(self.centre))
 
     def balls(self) -> Iterator[acb]:
-        """Yield a ball round the disc, and its mirror image."""
+        """Yield a ball round the disc, and round its mirror image."""
         around = arb(0, self.radius)
-        if self.points == 1:
-            yield acb(self.centre.real + around)
-        else:
-            ball = acb(self.centre.real + around, self.centre.imag + around)
-            yield ball
-            yield ball.conjugate()
+        for z in self.images():
+            yield acb(z.real + around) if z.imag == 0 else acb(z.real + around, z.imag + around)
 
 
 def enclose_roots(p: fmpz_poly, bits: int) -> list[acb]:
@@ -60,21 +55,21 @@ def enclose_roots(p: fmpz_poly, bits: int) -> list[acb]:
     Raises TooHard where the roots cannot be told apart at the highest precision.
     """
     eigenvalues, exponent = guess_roots(p)
-    centres = [exactly(u, exponent) for u in eigenvalues.tolist()]
+    centres = [exactly(u, exponent) for u in eigenvalues.tolist() if u.imag >= 0]
     precision = bits + 64
-    found = _proven(p, [z for z in centres if z.imag >= 0], bits, precision)
+    found, guesses = _tried(p, centres, bits, precision)
     precision += p.height_bits()
-    guesses = [Guess((z * _NUDGE).mid(), arb.pos_inf()) for z in centres]
     while found is None and precision < _HIGHEST_BITS:
         guesses, apart = separate(p, guesses, bits, precision)
         if apart:
-            found = _proven(p, _upper(guesses), bits, precision)
+            found, _ = _tried(p, _upper(guesses), bits, precision)
         precision *= 2
     if found is None:
         raise TooHard(
             f"The closed-loop poles lie so close together that {precision} bits do not tell them apart."
         )
-    return [ball for disc in found for ball in disc.balls()]
+    with working(precision):
+        return [ball for disc in found for ball in disc.balls()]
 
 
 def _upper(guesses: list[Guess]) -> list[acb]:
@@ -87,16 +82,28 @@ def _upper(guesses: list[Guess]) -> list[acb]:
     ]
 
 
-def _proven(p: fmpz_poly, centres: list[acb], bits: int, precision: int) -> list[Disc] | None:
-    """Improve the centres and return their discs where these are proven to hold all roots, one each."""
+def _tried(
+    p: fmpz_poly, centres: list[acb], bits: int, precision: int
+) -> tuple[list[Disc] | None, list[Guess]]:
+    """Improve the centres; return their discs if these are proven to hold all roots, one each.
+
+    Otherwise return a guess for each root, the centre where an improved one is not good enough.
+    """
     with working(precision):
         derivative = p.derivative()
         discs = [_improved(p, derivative, z) for z in centres]
-        if sum(d.points for d in discs) != p.degree() or not all(d.settled(bits) for d in discs):
-            return None
-        images = [d.centre for d in discs] + [d.centre.conjugate() for d in discs if d.points > 1]
-        radii = [d.radius for d in discs] + [d.radius for d in discs if d.points > 1]
-        return discs if len(joined(images, radii)) == p.degree() else None
+        places = [(i, z) for i, d in enumerate(discs) for z in d.images()]
+        groups = joined([z for _, z in places], [discs[i].radius for i, _ in places])
+        alone = {places[group[0]][0] for group in groups if len(group) == 1}
+        good = {i for i in alone if discs[i].settled(bits)}
+        if len(places) == len(groups) == p.degree() and len(good) == len(discs):
+            return discs, []
+        guesses = [Guess(z, discs[i].radius) for i in good for z in discs[i].images()]
+        for i, centre in enumerate(centres):
+            if i not in good:
+                images = Disc((centre * _NUDGE).mid(), arb.pos_inf()).images()
+                guesses += [Guess(z, arb.pos_inf()) for z in images][: 1 if centre.imag == 0 else 2]
+        return None, guesses
 
 
 def _improved(p: fmpz_poly, derivative: fmpz_poly, centre: acb) -> Disc:

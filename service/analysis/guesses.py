@@ -17,7 +17,8 @@ def guess_roots(p: fmpz_poly) -> tuple[Complexes, int]:
     coefficients = [int(c) for c in p.coeffs()]
     degree = len(coefficients) - 1
     tilt = (abs(coefficients[0]).bit_length() - abs(coefficients[-1]).bit_length()) // degree
-    levelled = [shifted(c, tilt * i) for i, c in enumerate(coefficients)]
+    spare = max(0, -tilt * degree)
+    levelled = [c << (tilt * i + spare) for i, c in enumerate(coefficients)]
     excess = max(abs(c).bit_length() for c in levelled) - 900
     return companion_roots([float(shifted(c, -excess)) for c in levelled]), tilt
 

@@ -1,22 +1,26 @@
 """Positive real roots of an integer polynomial: isolated exactly, refined on demand.
 
 Isolation is by Descartes' rule of signs on intervals (G. E. Collins and A. G. Akritas, 1976), with the
-cuts placed where a floating-point root finder expects roots. The guesses decide nothing: an interval
-counts only by its sign changes, so a bad guess costs time and never a root. Only real positive roots
-are separated, never complex ones, whose clusters can be arbitrarily expensive. Refinement is the
-interval Newton step in ball arithmetic (R. E. Moore, Interval Analysis, 1966).
+first cuts where a floating-point root finder expects roots. The guesses decide nothing: an interval
+counts only by its sign changes, so a bad guess costs time and never a root. Where roots cluster so that
+halving would take too long, they are enclosed all together (``enclosures``). Refinement is the interval
+Newton step in ball arithmetic (R. E. Moore, Interval Analysis, 1966).
 """
 
 from collections.abc import Iterator
 from functools import cmp_to_key
+from itertools import pairwise
 
 import numpy as np
 from flint import arb, fmpq, fmpz, fmpz_poly
 
+from service.analysis.enclosures import enclose_roots
 from service.analysis.guesses import guess_roots
 from service.analysis.polynomials import sign, sign_variations
 from service.analysis.precision import accurate_bits, ends, working
 
+_MOST_CUTS = 400
+_ENCLOSED_BITS = 32
 _ALMOST_REAL = 1e-3  # a guess this near to the real axis may stand for a real root
 _SPREADS = (32, 14)  # bits: half width of the interval tried round a guess, relative to it
 
@@ -159,7 +163,8 @@ def isolate_positive(p: fmpz_poly) -> list[PositiveRoot]:
         return [PositiveRoot(p, value, value)]
     brackets = list(_guessed_brackets(p))
     if len(brackets) < variations:
-        brackets = list(_completed(p, brackets))
+        halved = _halved(p, brackets)
+        brackets = list(_enclosed(p)) if halved is None else halved
     return [PositiveRoot(p, low, high) for low, high in brackets]
 
 
@@ -194,15 +199,39 @@ def _guesses(p: fmpz_poly) -> list[fmpq]:
     return [fmpq(*u.as_integer_ratio()) * scale for u in sorted({float(u) for u in near})]
 
 
-def _completed(p: fmpz_poly, brackets: list[tuple[fmpq, fmpq]]) -> Iterator[tuple[fmpq, fmpq]]:
-    """Yield intervals with exactly one root each, all of them: brackets and what lies between."""
-    start, stop = _root_bounds(p)
-    last = start
-    for low, high in brackets:
-        yield from _within(p, last, max(low, last))
-        yield from _within(p, low, high)
-        last = high
-    yield from _within(p, last, max(stop, last))
+def _halved(p: fmpz_poly, brackets: list[tuple[fmpq, fmpq]]) -> list[tuple[fmpq, fmpq]] | None:
+    """Return isolating intervals of all positive roots, ascending, by cutting at the brackets and halving.
+
+    None where that takes more than ``_MOST_CUTS`` intervals.
+    """
+    cuts = {*_root_bounds(p), *(end for bracket in brackets for end in bracket)}
+    waiting = list(pairwise(sorted(cuts)))[::-1]
+    found: list[tuple[fmpq, fmpq]] = []
+    for _ in range(_MOST_CUTS):
+        if not waiting:
+            return found
+        low, high = waiting.pop()
+        if low == high:
+            found.append((low, low))
+            continue
+        variations = _variations_within(p, low, high)
+        if variations == 1 and p(low) != 0 and p(high) != 0:
+            found.append((low, high))
+        elif variations:
+            cut = short_between(low, high)
+            waiting.append((cut, high))
+            if p(cut) == 0:
+                waiting.append((cut, cut))
+            waiting.append((low, cut))
+    return None
+
+
+def _enclosed(p: fmpz_poly) -> Iterator[tuple[fmpq, fmpq]]:
+    """Yield isolating intervals of all positive roots, ascending, from enclosures of all complex ones."""
+    real = [root.real for root in enclose_roots(p, _ENCLOSED_BITS) if root.imag.is_zero()]
+    for low, high in sorted(ends(ball) for ball in real if ball > 0):
+        root = low if p(low) == 0 else high if p(high) == 0 else None
+        yield (low, high) if root is None else (root, root)
 
 
 def _root_bounds(p: fmpz_poly) -> tuple[fmpq, fmpq]:
@@ -212,23 +241,6 @@ def _root_bounds(p: fmpz_poly) -> tuple[fmpq, fmpq]:
     above = max(-((bits[top] - 1 - b) // (top - i)) for i, b in enumerate(bits[:-1]) if b)
     below = max(-((bits[0] - 1 - b) // i) for i, b in enumerate(bits) if i and b)
     return power_of_two(-below - 2), power_of_two(above + 2)
-
-
-def _within(p: fmpz_poly, low: fmpq, high: fmpq) -> Iterator[tuple[fmpq, fmpq]]:
-    """Yield isolating intervals for the roots in the open interval (low, high), 0 < low <= high."""
-    if low >= high:
-        return
-    variations = _variations_within(p, low, high)
-    if variations == 0:
-        return
-    if variations == 1 and p(low) != 0 and p(high) != 0:
-        yield low, high
-        return
-    cut = short_between(low, high)
-    yield from _within(p, low, cut)
-    if p(cut) == 0:
-        yield cut, cut
-    yield from _within(p, cut, high)
 
 
 def _variations_within(p: fmpz_poly, low: fmpq, high: fmpq) -> int:

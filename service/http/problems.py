@@ -9,7 +9,7 @@ from werkzeug.exceptions import HTTPException, MethodNotAllowed, NotFound
 from schemas.problem import Fault, fault_document
 from schemas.question import InvalidQuestion
 from schemas.reader import NotJson
-from service.analysis.errors import CountsDisagree, InvalidLoop, OutOfRange, TooLarge
+from service.analysis.errors import CountsDisagree, InvalidLoop, OutOfRange, TooHard, TooLarge
 from service.exchange import json_bytes
 from service.http import problem_types as types
 from service.http.problem_types import ProblemType
@@ -82,6 +82,8 @@ def problem_of(error: Exception) -> Problem:  # noqa: PLR0911 (a return a proble
         case TooLarge():
             members = {"limit": "polynomial_bits", "allowed": error.allowed, "received": error.received}
             return Problem(types.QUESTION_TOO_HEAVY, str(error), members)
+        case TooHard():
+            return Problem(types.QUESTION_TOO_HEAVY, str(error))
         case OutOfRange():
             return Problem(types.OUT_OF_RANGE, str(error))
         case CountsDisagree():

@@ -115,7 +115,7 @@ def test_crossings_are_the_exact_roots_sympy_finds(loop: Loop) -> None:
 @given(loop=modest)
 @settings(max_examples=40)
 def test_exact_forms_are_those_sympy_would_write(loop: Loop) -> None:
-    """An exact text is the value; where a gain has none, neither it nor its square is a fraction of a few digits."""
+    """An exact text is the value; a gain without one is no fraction of a few digits, nor is its square."""
     for edge in ask(loop).edges:
         for value, exact in [(edge.gain, edge.exact), *((f.rad_per_s, f.exact) for f in edge.frequencies)]:
             if exact is not None:
