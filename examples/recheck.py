@@ -91,7 +91,7 @@ class Poly(tuple[Any, ...]):  # noqa: SLOT001 - few are made
     def counts(self) -> tuple[int, int, str]:
         """Count the roots right of the imaginary axis and on it, with multiplicity, and give the verdict."""
         even, odd = (Poly(c * (-1) ** (k // 2) * (k % 2 == i) for k, c in enumerate(self)) for i in (0, 1))
-        chain = even.chain(MINUS * odd) if len(self) % 2 else odd.chain(even)
+        chain = even.chain(MINUS * odd) if len(self) % 2 else odd.chain(even)  # p(jw) = even + j odd
         found = [changes(level.chain(level.slope()), -inf, inf) for level in chain[-1].levels()]
         right, axis = (len(self) - 1 - changes(chain, -inf, inf) - sum(found)) // 2, sum(found)
         return right, axis, "unstable" if right or axis > found[0] else "marginal" if axis else "stable"
@@ -127,15 +127,16 @@ def changes(chain: list[Poly], *ends: Any) -> int:
 
 
 class Value:
-    """-a(x)/b(x), or x itself, at the one root x of f between the ends; low = high where it is a fraction."""
+    """-a(x)/b(x), or x itself, where x is the one root of a squarefree f between the ends, or both ends.
+
+    It lies between low and high; they are equal if it is a fraction. Such has a denominator up to the bound.
+    """
 
     def __init__(self, low: Any, high: Any, f: Poly = ONE, *ratio: Poly, bound: int = 0) -> None:
         self.f, self.ends, self.power, self.bound = f, [low, high], 1, bound or abs(f[-1])
         self.a, self.b = ratio or (MINUS * X, ONE)
         self.enclose()
-        wide = (
-            2 * self.bound**2
-        )  # a fraction's denominator is at most the bound: two are further apart than 1/wide
+        wide = 2 * self.bound**2  # two fractions with denominators up to the bound are 2/wide apart at least
         while self.low < self.high and (self.low * self.high <= 0 or (self.high - self.low) * wide >= 1):
             self.sharpen()
         found = ((self.low + self.high) / 2).limit_denominator(self.bound)
@@ -172,7 +173,7 @@ class Value:
         common = self.f.shared(total)
         return common(self.ends[0]) * common(self.ends[1]) <= 0
 
-    def cell(self, bits: int, like: Any = ("0", "0")) -> list[Fraction]:
+    def cell(self, bits: int, like: Any = None) -> list[Fraction]:
         """Give m/2^k and (m+1)/2^k round it, k = bits - floor(log2 |it|); bits double to be fine as like."""
         while self.low < self.high:
             middle = abs(self.low + self.high) / 2
@@ -180,7 +181,7 @@ class Value:
             unit = Fraction(2) ** (size - (middle < Fraction(2) ** size) - bits)
             low = floor((self.low + self.high) / 2 / unit) * unit
             if low <= self.low and self.high <= low + unit:
-                coarse = 0 < exact(like[1]) - exact(like[0]) < unit
+                coarse = like and 0 < exact(like[1]) - exact(like[0]) < unit
                 return self.cell(2 * bits, like) if coarse else [low, low + unit]
             self.sharpen()
         return [self.low, self.high]
@@ -227,9 +228,8 @@ class Loop:
         feedback, detour = get("feedback", "negative"), get("detour", "right")
         sign, self.left = {"negative": 1, "positive": -1}[feedback], {"right": 0, "left": 1}[detour]
         scale = lcm(*(Fraction(c).denominator for p in sent for c in p))
-        self.N, self.D = (
-            Poly(int(c * by) for c in p) for p, by in zip(sent, (scale * sign, scale), strict=True)
-        )
+        self.N = Poly(int(c * scale) * sign for c in sent[0])
+        self.D = Poly(int(c * scale) for c in sent[1])
         self.common = self.D.shared(self.N)
         self.n, self.d = self.N // self.common, self.D // self.common
         texts, excess = ([str(c) for c in reversed(p)] or ["0"] for p in sent), len(self.D) - len(self.N)
@@ -253,6 +253,7 @@ class Loop:
         if h := (u0 * v1 + MINUS * v0 * u1) * hidden:
             u, v, w = (sum(map(abs, terms)) for terms in ((*u0, *u1), (*v0, *v1), hidden))
             rows_u, rows_v = max(len(v0), len(v1)) + len(hidden), max(len(u0), len(u1))
+            # a = 0 is an axis pole and b = 0 an axis zero of L: no gain has its root there
             for x in (x for x in h.positive_roots(hints) if not x.holds(a) and not x.holds(b)):
                 yield "crossing", x, Value(*x.ends, x.f, a, b, bound=u**rows_u * (v * w) ** rows_v)
         if len(n) == len(d):
@@ -316,19 +317,18 @@ def edge_of(edge: Any, claim: dict[str, Any], around: Any) -> tuple[dict[str, An
         low, high = map(exact, claim["gain_between"])
         m = Poly(int(exact(c)) for c in reversed(claim["gain_polynomial"]))
         inside = all(gain.side(low) > 0 > gain.side(high) and gain.holds(m) for gain in gains)
-        if not inside or changes(m.chain(m.slope()), low, high) != 1:
+        if not inside or gcd(*m) != 1 or m[-1] < 0 or changes(m.chain(m.slope()), low, high) != 1:
             raise ValueError("gain_polynomial does not prove that gains are equal")
     elif low == high and (len(gains) > 1 or (squares[0] and squares[0].low < squares[0].high)):
         m = Poly((-low.numerator, low.denominator))
-    pairs = [y and y.cell(192, pair) for y, pair in zip(squares, claim["omega_squared_between"], strict=True)]
+    pairs = [y and y.cell(192, pair) for y, pair in zip_longest(squares, claim["omega_squared_between"])]
     spans = [span and [str(end) for end in span] for span in (x.cell(64, claim["gain_between"]), *pairs)]
-    values = spans[0], spans[1:], m and [str(c) for c in reversed(m)]
+    values = spans[0], spans[1 : len(squares) + 1], m and [str(c) for c in reversed(m)]
     return document, named("gain_between omega_squared_between gain_polynomial", *values)
 
 
-def due(loop: Loop, answer: dict[str, Any]) -> dict[str, Any]:
-    """Derive what the answer must say, from the question and from what is proved of the evidence."""
-    claims = answer["evidence"]["edges"]
+def due(loop: Loop, claims: list[Any]) -> dict[str, Any]:
+    """Derive what the answer must say, from the question and from what is proved of the evidence of edges."""
     hints = {exact(end) for e in claims for pair in e["omega_squared_between"] if pair for end in pair}
     every = loop.edges(hints)
     first = sum(all(gain.side(loop.low) < 0 for gain in gains) for _, _, gains in every)
@@ -344,7 +344,7 @@ def due(loop: Loop, answer: dict[str, Any]) -> dict[str, Any]:
     enclosed = right + (axis - hidden_axis) * loop.left
     bands, samples = [], []
     for start, stop, low, high, around in zip(starts, stops, below, above, pairwise(ends), strict=False):
-        empty = start >= stop and (start == loop.low or stop == loop.high)
+        empty = start >= stop and (start == loop.low or stop == loop.high)  # an edge at the window's end
         sample = simplest(low, high) if empty else simplest(start, stop)
         rhp, on_axis, verdict = loop.closed(sample).counts()
         values = *around, verdict, rhp, on_axis, rhp - enclosed if on_axis == hidden_axis else None
@@ -388,9 +388,9 @@ def main(paths: list[str]) -> int:
         loop = Loop(json.loads(question, object_pairs_hook=unique, parse_int=str, parse_float=str))
         document = {**json.loads(answer, object_pairs_hook=unique, parse_int=float)}
         code = 1
-        faults = [*differences("", document, due(loop, document))]
+        faults = [*differences("", document, due(loop, document["evidence"]["edges"]))]
     except Exception as fault:  # noqa: BLE001 - whatever goes wrong, nothing is believed
-        faults = [f"{'the answer' if code == 1 else 'the question'} cannot be followed: {fault!r}"]
+        faults = [f"{'the answer' if code == 1 else 'question or answer'} cannot be followed: {fault!r}"]
     proved = "Loop, open loop, edges, bands, evidence, and verdict and counts at the gain in service hold."
     print(*faults or [proved, "Not rechecked: closed-loop poles, nearest stable band, words."], sep="\n")
     return code if faults else 0

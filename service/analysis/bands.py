@@ -65,13 +65,24 @@ class OpenLoopCounts:
         return cls(cancelled, fixed, cancelled.rhp + fixed.rhp + taken_in)
 
 
-def gain_cells(edges: tuple[RawEdge, ...]) -> tuple[Cell, ...]:
+def gain_cells(edges: Sequence[RawEdge], walls: Sequence[tuple[int, fmpq]] = ()) -> tuple[Cell, ...]:
     """Return disjoint ascending intervals round the gains, of 64 significant bits or 64 times 2^i.
 
     A rational gain is its own interval; see ``dyadic_cell`` for the others. Where an irrational gain has
-    several frequencies, its interval holds one root of its minimal polynomial only.
+    several frequencies, its interval holds one root of its minimal polynomial only. No interval reaches
+    a wall: (number of edges below it, gain that is no edge's).
     """
-    return separate_cells([_cell_maker(edge) for edge in edges], CELL_BITS)
+    makers = [_cell_maker(edge) for edge in edges]
+    for below, gain in reversed(walls):
+        makers.insert(below, _exactly(gain))
+    cells = list(separate_cells(makers, CELL_BITS))
+    for below, _ in walls:
+        del cells[below]
+    return tuple(cells)
+
+
+def _exactly(gain: fmpq) -> CellMaker:
+    return lambda _bits: (gain, gain)
 
 
 def _cell_maker(edge: RawEdge) -> CellMaker:

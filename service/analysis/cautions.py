@@ -97,16 +97,18 @@ def _of_conditional_stability(
         edge, beyond = edges[inner], bands[inner if inner < i else inner + 1]
         if beyond.verdict == "stable":
             continue
-        fate = (
-            f"{counted(beyond.rhp_poles, 'pole')} unstable, {manner(edge.frequencies)}"
-            if beyond.rhp_poles
-            else f"{counted(beyond.axis_poles, 'pole')} on the imaginary axis"
-        )
         yield Caution(
             "conditional_stability",
-            f"A drop in gain destabilises: towards zero beyond K = {edge_text(edge)} there are {fate}. "
+            f"A drop in gain destabilises: towards zero beyond K = {edge_text(edge)} {_fate(beyond, edge)}. "
             "Saturation, start-up and a worn actuator lower the effective gain.",
         )
+
+
+def _fate(beyond: Band, edge: Edge) -> str:
+    if beyond.rhp_poles:
+        verb = "is" if beyond.rhp_poles == 1 else "are"
+        return f"{counted(beyond.rhp_poles, 'pole')} {verb} unstable, {manner(edge.frequencies)}"
+    return f"{counted(beyond.axis_poles, 'pole')} stay on the imaginary axis"
 
 
 def _edge_towards_zero(edges: tuple[Edge, ...], band: int) -> int | None:

@@ -48,10 +48,11 @@ def find_edges(loop: ExactLoop, course: AxisCourse, winding: Winding) -> tuple[R
 def _all(loop: ExactLoop, course: AxisCourse, winding: Winding) -> Iterator[RawEdge]:
     """Yield edges cause by cause, so that merged ones list their places in ascending frequency."""
     n, d = loop.numerator, loop.denominator
-    if d[0] != 0 and n[0] != 0:
+    algebraic = n.degree() == 0 == d.degree()  # one gain at all frequencies, told as infinity's alone
+    if d[0] != 0 and n[0] != 0 and not algebraic:
         yield RawEdge(Gain(-fmpq(d[0], n[0])), ("origin",), (ORIGIN,), winding.origin_swing)
     for passage, swing in zip(course.passages, winding.swings, strict=True):
-        if passage.gain is not None:
+        if passage.gain is not None and not algebraic:
             yield RawEdge(passage.gain, ("crossing",), (passage.at,), swing)
     if loop.excess == 0:
         gain = Gain(-fmpq(d.leading_coefficient(), n.leading_coefficient()))

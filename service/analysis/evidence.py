@@ -14,7 +14,6 @@ from service.analysis.answer import BandEvidence, EdgeEvidence, Evidence
 from service.analysis.bands import Cell, dyadic_cell, separate_cells
 from service.analysis.edges import ORIGIN, Place, RawEdge
 from service.analysis.loop import AxisView
-from service.analysis.polynomials import descending
 from service.analysis.roots import PositiveRoot, by_frequency
 from service.analysis.survey import Survey
 
@@ -54,7 +53,7 @@ def _place_evidence(place: Place, squares: dict[int, Cell]) -> tuple[str, str] |
 def _gain_polynomial(edge: RawEdge) -> tuple[str, ...] | None:
     irrational = any(isinstance(p, PositiveRoot) and p.rational is None for p in edge.places)
     if len(edge.places) > 1 or (irrational and edge.gain.rational is not None):
-        return tuple(str(c) for c in descending(edge.gain.minimal_polynomial))
+        return tuple(str(c) for c in reversed(edge.gain.minimal_polynomial.coeffs()))
     return None
 
 

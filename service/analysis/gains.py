@@ -26,6 +26,7 @@ class GainMap:
         self.f = f
         self.top = top
         self.bottom = bottom
+        self._minimal: dict[tuple[int, ...], fmpz_poly] = {}
 
     def at(self, x: arb) -> arb:
         """Enclose K at x, at the working precision."""
@@ -84,6 +85,12 @@ class GainMap:
         The resultant of the factor with top + K bottom in x is a power of it; it is interpolated from
         its values at K = 0, 1, 2, ... by Newton's forward differences.
         """
+        key = tuple(int(c) for c in factor.coeffs())
+        if key not in self._minimal:
+            self._minimal[key] = self._interpolated(factor)
+        return self._minimal[key]
+
+    def _interpolated(self, factor: fmpz_poly) -> fmpz_poly:
         values = [factor.resultant(self.top + k * self.bottom) for k in range(factor.degree() + 1)]
         resultant, basis = fmpq_poly([0]), fmpq_poly([1])
         for k in range(len(values)):

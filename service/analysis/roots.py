@@ -76,7 +76,7 @@ class PositiveRoot:
                 narrower = self._newton(ball)
             if narrower is None or accurate_bits(narrower) <= known:
                 ball = self._bisect(ball)
-                headroom *= 2
+                headroom = min(2 * headroom, 8 * (known + bits) + self.polynomial.height_bits())
             else:
                 ball = narrower
             if self.low == self.high:

@@ -61,9 +61,9 @@ def survey(loop: ExactLoop, detour: Detour, window: Window | None) -> Survey:
         course = axis_course(loop)
         winding = wind(loop, course, detour)
         edges = find_edges(loop, course, winding)
-    cells = gain_cells(edges)
     wound = encirclements(edges, winding)
     first, last = _inside(edges, window)
+    cells = gain_cells(edges, _walls(edges, first, last, window))
     spans = tuple(span_of(cells, i, window) for i in range(first, last + 1))
     open_loop = OpenLoopCounts.of(loop, detour)
     bands = tuple(
@@ -81,3 +81,17 @@ def _inside(edges: tuple[RawEdge, ...], window: Window | None) -> tuple[int, int
     first = sum(compare(edge.gain, low) < 0 for edge in edges)
     last = sum(compare(edge.gain, high) <= 0 for edge in edges)
     return first, last
+
+
+def _walls(
+    edges: tuple[RawEdge, ...], first: int, last: int, window: Window | None
+) -> list[tuple[int, fmpq]]:
+    """Return the window's ends that are no edges, each with the number of edges below it."""
+    if window is None:
+        return []
+    walls = []
+    if first == len(edges) or edges[first].gain.rational != window[0]:
+        walls.append((first, window[0]))
+    if last == 0 or edges[last - 1].gain.rational != window[1]:
+        walls.append((last, window[1]))
+    return walls

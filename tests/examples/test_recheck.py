@@ -83,6 +83,10 @@ CASES: dict[str, dict[str, Any]] = {
     "everything cancels": {"numerator": [1, 1], "denominator": [1, 1], "gain": -1},
     "no numerator": {"numerator": [0, 0], "denominator": [0, 1, 0, 1, 0], "detour": "left", "gain": 3},
     "negative leading coefficient": {"numerator": [1], "denominator": [-1, 1]},
+    "two frequencies at one irrational gain": {
+        "numerator": [1, 0, 1, 0, 0, 0],
+        "denominator": [-1, 1, -4, 3, -4, 3, -4, 1, -1],
+    },
     "24 decades": {"numerator": ["1e-12"], "denominator": ["1e12", 3, "1e-12", 0]},
     "window round an edge": {
         "numerator": [1],
@@ -103,7 +107,6 @@ CASES: dict[str, dict[str, Any]] = {
 TAMPERED = [
     "the contract's own",
     "gain in service on an edge",
-    "triple axis pair",
     "irrational axis poles",
     "gain the root of a fraction",
     "rational gain at irrational squares",
@@ -115,14 +118,7 @@ TAMPERED = [
     "constant",
     "no numerator",
     "window from edge to edge",
-    "two frequencies at one irrational gain",
 ]
-
-# s + 1/s put for s in 1/(s^2 + s + 1)(s + 1): each gain at two frequencies at once.
-CASES["two frequencies at one irrational gain"] = {
-    "numerator": [1, 4, 0, 0, 0],
-    "denominator": [1, 2, 8, 9, 15, 9, 8, 2, 1],
-}
 
 
 @pytest.fixture(scope="module")
@@ -178,7 +174,7 @@ def test_a_true_answer_holds(desk: Desk, capsys: pytest.CaptureFixture[str], nam
     assert desk.code(question, answered(question)) == HOLDS, capsys.readouterr().out
 
 
-@settings(max_examples=60)
+@settings(max_examples=30)
 @given(any_loops, feedbacks, detours)
 def test_the_answer_to_any_nasty_loop_holds(
     recheck: ModuleType, tmp_path_factory: pytest.TempPathFactory, loop: Loop, feedback: str, detour: str
@@ -190,7 +186,7 @@ def test_the_answer_to_any_nasty_loop_holds(
     assert desk.code(question, answered(question)) == HOLDS
 
 
-@settings(max_examples=40)
+@settings(max_examples=25)
 @given(questions())
 def test_the_answer_to_a_question_of_any_form_holds(
     recheck: ModuleType, tmp_path_factory: pytest.TempPathFactory, fields: dict[str, Any]
@@ -204,7 +200,7 @@ def changed_values(value: Any) -> Iterator[Any]:
     """Give what may stand in a value's place: its neighbours, another digit, null."""
     yield 0 if value is None else None
     if isinstance(value, bool):
-        yield not value
+        yield from (not value, int(value))
     elif isinstance(value, int):
         yield from (value + 1, value - 1)
     elif isinstance(value, float):
@@ -231,21 +227,47 @@ def tampered(node: Any, where: str = "") -> Iterator[tuple[str, Any]]:
                 yield name, [*node[:i], part, *node[i + 1 :]]
     else:
         for other in changed_values(node):
-            if other != node:
+            if (type(other), other) != (type(node), node):
                 yield f"{where}: {node!r} became {other!r}", other
 
 
 @pytest.mark.parametrize("name", TAMPERED)
-def test_no_changed_value_passes(desk: Desk, name: str) -> None:
+def test_no_changed_value_passes(recheck: ModuleType, desk: Desk, name: str) -> None:
+    """What is due follows from question and evidence: it is derived anew only where the evidence changed."""
     question = asked(CASES[name])
     answer = answered(question)
+    loop = recheck.Loop(json.loads(question, parse_int=str, parse_float=str))
+    due = recheck.due(loop, answer["evidence"]["edges"])
+
+    def passes(document: dict[str, Any]) -> bool:
+        if document["evidence"] != answer["evidence"]:
+            return desk.code(question, document) != FAILS
+        try:
+            return not any(recheck.differences("", json.loads(body(document), parse_int=float), due))
+        except KeyError:
+            return False
+
+    assert passes(answer)
     changes = [
         (change, {**answer, part: other})
         for part in RECHECKED
         for change, other in tampered(answer[part], f"/{part}")
     ]
     assert len(changes) > 50
-    assert [change for change, document in changes if desk.code(question, document) != FAILS] == []
+    assert [change for change, document in changes if passes(document)] == []
+
+
+def test_no_other_polynomial_of_an_irrational_gain_passes(desk: Desk) -> None:
+    """Here s + 1/s was put for s, so that the gain sqrt(2) is reached at two frequencies: K^2 - 2 says so."""
+    question = asked(CASES["two frequencies at one irrational gain"])
+    answer = answered(question)
+    evidence = answer["evidence"]["edges"][0]
+    assert evidence["gain_polynomial"] == ["1", "0", "-2"]
+    changes = list(tampered(evidence["gain_polynomial"]))
+    assert len(changes) > 10
+    for change, polynomial in [*changes, ("none", None), ("twice it", ["2", "0", "-4"])]:
+        evidence["gain_polynomial"] = polynomial
+        assert desk.code(question, answer) == FAILS, change
 
 
 def parsed(pair: list[str]) -> tuple[Fraction, Fraction]:
