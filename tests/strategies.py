@@ -230,10 +230,11 @@ def tied(draw: DrawFn) -> Loop:
 
 @st.composite
 def wide(draw: DrawFn) -> Loop:
-    """Corner frequencies and gains over 24 decades."""
-    corners = st.builds(lambda place, decade: polynomial(1, place * decade), non_zeros, decades)
-    denominator = multiply(power(S, draw(st.integers(0, 2))), draw(products(corners, 1, 3)))
-    numerator = draw(products(corners, 0, 2))
+    """Corner frequencies and gains over 24 decades, mostly left of the axis."""
+    places = st.one_of(positives, positives, non_zeros)
+    corners = st.builds(lambda place, decade: polynomial(1, place * decade), places, decades)
+    denominator = multiply(power(S, draw(st.integers(0, 2))), draw(products(corners, 1, 4)))
+    numerator = draw(products(corners, 0, 3))
     return Loop(scaled(numerator, draw(non_zeros) * draw(decades)), denominator)
 
 

@@ -219,8 +219,14 @@ def simplest_between(lower: fmpq | None, upper: fmpq | None) -> fmpq:
         return fmpq(0)
     if lower is None or lower < 0:
         return -simplest_between(None if upper is None else -upper, None if lower is None else -lower)
-    whole = fmpq(lower.floor())
-    if upper is None or whole + 1 < upper:
-        return whole + 1
-    above = None if lower == whole else 1 / (lower - whole)
-    return whole + 1 / simplest_between(1 / (upper - whole), above)
+    wholes = []
+    while True:
+        whole = fmpq(lower.floor())
+        if upper is None or whole + 1 < upper:
+            break
+        wholes.append(whole)
+        lower, upper = 1 / (upper - whole), None if lower == whole else 1 / (lower - whole)
+    simplest = whole + 1
+    for whole in reversed(wholes):
+        simplest = whole + 1 / simplest
+    return simplest

@@ -1,15 +1,18 @@
 """What this loop makes worth saying beside the verdict: a code for programs, a sentence for people."""
 
 from collections.abc import Iterator
+from decimal import Decimal
 from typing import Final
 
-from flint import fmpq, fmpz_poly
+from flint import fmpq
 
 from service.analysis.answer import Band, Caution, Commissioned, Edge, OpenLoop
+from service.analysis.commissioned import verdict_at
 from service.analysis.counts import count_roots
+from service.analysis.loop import ExactLoop
 from service.analysis.phrases import counted, edge_text, manner
 from service.analysis.polynomials import squarefree_levels, strip_origin
-from service.analysis.precision import nearest_double
+from service.analysis.precision import decimal30
 from service.analysis.roots import count_positive
 from service.analysis.survey import Survey
 
@@ -73,7 +76,7 @@ def _of_structure(survey: Survey, open_loop: OpenLoop) -> Iterator[Caution]:
         yield Caution(
             "direct_feedthrough",
             "The loop does not fall off at high frequency. Any dead time, however short, makes it unstable "
-            f"wherever |K| > {nearest_double(limit):.4g}.",
+            f"wherever |K| > {Decimal(decimal30(limit)):.4g}.",
         )
     if survey.course.side_at_start == 0 and loop.denominator.degree() + loop.numerator.degree() > 0:
         yield Caution(
@@ -88,15 +91,13 @@ def _of_conditional_stability(
 ) -> Iterator[Caution]:
     """Name the edges towards zero that a stable gain may not fall below."""
     wanted = range(len(bands)) if commissioned is None else (commissioned.band,)
+    named = set()
     for i in wanted:
-        if i is None or bands[i].verdict != "stable":
+        limit = None if i is None or bands[i].verdict != "stable" else _limit_towards_zero(edges, bands, i)
+        if limit is None or limit in named:
             continue
-        inner = _edge_towards_zero(edges, i)
-        if inner is None:
-            continue
-        edge, beyond = edges[inner], bands[inner if inner < i else inner + 1]
-        if beyond.verdict == "stable":
-            continue
+        named.add(limit)
+        edge, beyond = edges[limit[0]], bands[limit[1]]
         yield Caution(
             "conditional_stability",
             f"A drop in gain destabilises: towards zero beyond K = {edge_text(edge)} {_fate(beyond, edge)}. "
@@ -104,20 +105,29 @@ def _of_conditional_stability(
         )
 
 
+def _limit_towards_zero(
+    edges: tuple[Edge, ...], bands: tuple[Band, ...], band: int
+) -> tuple[int, int] | None:
+    """Return the numbers of the nearest edge towards zero with no stable band beyond, and of that band.
+
+    Zero itself is no such edge.
+    """
+    while band > 0 and edges[band - 1].gain > 0:
+        band -= 1
+        if bands[band].verdict != "stable":
+            return band, band
+    while band < len(edges) and edges[band].gain < 0:
+        band += 1
+        if bands[band].verdict != "stable":
+            return band - 1, band
+    return None
+
+
 def _fate(beyond: Band, edge: Edge) -> str:
     if beyond.rhp_poles:
         verb = "is" if beyond.rhp_poles == 1 else "are"
         return f"{counted(beyond.rhp_poles, 'pole')} {verb} unstable, {manner(edge.frequencies)}"
     return f"{counted(beyond.axis_poles, 'pole')} stay on the imaginary axis"
-
-
-def _edge_towards_zero(edges: tuple[Edge, ...], band: int) -> int | None:
-    """Return the number of the band's edge that lies between it and zero, zero itself excluded."""
-    if band > 0 and edges[band - 1].gain > 0:
-        return band - 1
-    if band < len(edges) and edges[band].gain < 0:
-        return band
-    return None
 
 
 def _of_commissioned(
@@ -128,7 +138,7 @@ def _of_commissioned(
     if commissioned.verdict == "marginal":
         yield Caution(
             "marginal_is_not_safe",
-            "At the gain in service an oscillation neither grows nor dies; any disturbance keeps it going.",
+            "At the gain in service poles lie on the imaginary axis: a disturbance never dies out.",
         )
     if commissioned.verdict == "ill_posed":
         yield Caution(
@@ -137,22 +147,22 @@ def _of_commissioned(
             "no answer of its own.",
         )
     if gain is not None and gain != 0:
-        yield _reversed(survey.loop.closed_at(-gain), -gain)
-
-
-def _reversed(closed: fmpz_poly, gain: fmpq) -> Caution:
-    """Say what a reversed sign does (swapped leads, a reversed actuator)."""
-    text = f"With the sign reversed (K = {gain}) "
-    if closed.is_zero():
-        return Caution("reversed_gain", f"{text}the loop is algebraic and has no answer of its own.")
-    counts = count_roots(closed)
-    if counts.rhp == 0 and counts.axis == 0:
-        return Caution("reversed_gain", f"{text}the loop is stable too: stability does not show the sign.")
-    if counts.rhp == 0:
-        return Caution(
-            "reversed_gain",
-            f"{text}the loop is at best marginal, with {counted(counts.axis, 'pole')} on the axis.",
+        yield Caution(
+            "reversed_gain", f"With the sign reversed (K = {-gain}) {_reversed(survey.loop, -gain)}."
         )
+
+
+def _reversed(loop: ExactLoop, gain: fmpq) -> str:
+    """Say what a reversed sign does (swapped leads, a reversed actuator)."""
+    closed = loop.closed_at(gain)
+    counts = None if closed.is_zero() else count_roots(closed)
+    verdict = verdict_at(loop, gain, counts)
+    if counts is None or verdict == "ill_posed":
+        return "the loop is algebraic and has no answer of its own"
+    if verdict == "stable":
+        return "the loop is stable too: stability does not show the sign"
+    if counts.rhp == 0:
+        return f"the loop is at best marginal, with {counted(counts.axis, 'pole')} on the axis"
     rest, _ = strip_origin(closed)
     straight = sum(count_positive(level) * m for level, m in squarefree_levels(rest))
     if straight == 0:
@@ -162,4 +172,4 @@ def _reversed(closed: fmpz_poly, gain: fmpq) -> Caution:
     else:
         how = f"{straight} of them running away without oscillation"
     verb = "is" if counts.rhp == 1 else "are"
-    return Caution("reversed_gain", f"{text}{counted(counts.rhp, 'pole')} {verb} unstable, {how}.")
+    return f"{counted(counts.rhp, 'pole')} {verb} unstable, {how}"

@@ -6,6 +6,7 @@ from service.analysis.answer import Commissioned, NearestStable, Verdict
 from service.analysis.bands import verdict_of
 from service.analysis.counts import Counts, count_roots
 from service.analysis.gains import Gain, compare
+from service.analysis.loop import ExactLoop
 from service.analysis.poles import closed_loop_poles
 from service.analysis.precision import HIGHEST, nearest_double, working
 from service.analysis.survey import Survey
@@ -16,7 +17,7 @@ def commission(survey: Survey, gain: fmpq) -> Commissioned:
     """Answer for one gain, exactly at an edge too."""
     closed = survey.loop.closed_at(gain)
     counts = None if closed.is_zero() else count_roots(closed)
-    verdict = _verdict(survey, gain, counts)
+    verdict = verdict_at(survey.loop, gain, counts)
     return Commissioned(
         gain=nearest_double(gain),
         exact=str(gain),
@@ -30,10 +31,10 @@ def commission(survey: Survey, gain: fmpq) -> Commissioned:
     )
 
 
-def _verdict(survey: Survey, gain: fmpq, counts: Counts | None) -> Verdict:
-    loop = survey.loop
-    algebraic = loop.excess == 0 and loop.reduced_at(gain).degree() < loop.denominator.degree()
-    if counts is None or (algebraic and not loop.zero):
+def verdict_at(loop: ExactLoop, gain: fmpq, counts: Counts | None) -> Verdict:
+    """Name what the counts at one gain mean (None: the closed-loop polynomial vanishes there)."""
+    loses_degree = loop.excess == 0 and loop.reduced_at(gain).degree() < loop.denominator.degree()
+    if counts is None or (loses_degree and not loop.zero):
         return "ill_posed"
     return verdict_of(counts)
 

@@ -37,7 +37,7 @@ def answer(question: Question, bits_limit: int = POLYNOMIAL_BITS) -> parts.Answe
         edges=edges,
         bands=bands,
         commissioned=commissioned,
-        summary=summarise(open_loop, edges, bands, commissioned),
+        summary=summarise(surveyed, open_loop, edges, bands, commissioned),
         cautions=cautions(surveyed, open_loop, edges, bands, gain, commissioned),
         evidence=gather(surveyed) if question.evidence else None,
     )

@@ -1,14 +1,16 @@
 """The closed-loop poles at one gain: certified, with multiplicity, on the axis exactly where they are."""
 
 from collections.abc import Iterator
+from dataclasses import replace
 from typing import Final
 
 from flint import acb, arb, fmpz_poly
 
 from service.analysis.answer import ClosedLoopPole
 from service.analysis.enclosures import enclose_roots
+from service.analysis.errors import OutOfRange
 from service.analysis.polynomials import parity_parts, squarefree_levels, strip_origin
-from service.analysis.precision import dyadic, ends, nearest_double, working
+from service.analysis.precision import double_in, dyadic, nearest_double, working
 
 _FIRST_BITS: Final = 80
 _LAST_BITS: Final = 1280
@@ -25,13 +27,19 @@ def closed_loop_poles(p: fmpz_poly) -> tuple[ClosedLoopPole, ...]:
     while True:
         try:
             poles = [
-                _written(root, multiplicity, last=bits >= _LAST_BITS)
+                pole
                 for root, multiplicity in _enclosed_roots(p, bits)
+                if not root.imag < 0
+                for pole in _with_image(_written(root, multiplicity, last=bits >= _LAST_BITS))
             ]
         except _Unsettled:
             bits *= 2
         else:
             return tuple(sorted(poles, key=lambda pole: (-pole.re, -pole.im)))
+
+
+def _with_image(pole: ClosedLoopPole) -> tuple[ClosedLoopPole, ...]:
+    return (pole,) if pole.im == 0 else (pole, replace(pole, im=-pole.im))
 
 
 class _Unsettled(Exception):
@@ -43,7 +51,7 @@ def _written(root: acb, multiplicity: int, *, last: bool) -> ClosedLoopPole:
     damping: float | None = None
     with working(_LAST_BITS):
         if not im.is_zero():
-            damping = 0.0 if re.is_zero() else _double(-re / abs(root), last=last)
+            damping = 0.0 if re.is_zero() else _ratio(-re / abs(root), last=last)
         elif not re.is_zero():
             damping = 1.0 if re < 0 else -1.0
         return ClosedLoopPole(
@@ -55,20 +63,23 @@ def _written(root: acb, multiplicity: int, *, last: bool) -> ClosedLoopPole:
         )
 
 
+def _ratio(ball: arb, *, last: bool) -> float | None:
+    """Round a ratio that is not zero; None where that would make it zero."""
+    try:
+        return _double(ball, last=last)
+    except OutOfRange:
+        return None
+
+
 def _double(ball: arb, *, last: bool) -> float:
     if ball.is_zero():
         return 0.0
     if last:
         return nearest_double(dyadic(ball.mid()))
-    if not ball.is_finite():
+    settled = double_in(ball)
+    if settled is None:
         raise _Unsettled
-    low, high = ends(ball)
-    if low <= 0 <= high:
-        raise _Unsettled
-    first = nearest_double(low)
-    if first != nearest_double(high):
-        raise _Unsettled
-    return first
+    return settled
 
 
 def _enclosed_roots(p: fmpz_poly, bits: int) -> Iterator[tuple[acb, int]]:

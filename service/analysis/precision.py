@@ -4,15 +4,14 @@ FLINT keeps one precision for the whole process: it is set here alone, and whoev
 must let one analysis run at a time.
 """
 
+import math
 from collections.abc import Callable
 from decimal import ROUND_HALF_EVEN, Context, Decimal
-from typing import Final, TypeVar
+from typing import Final
 
 from flint import arb, ctx, fmpq
 
 from service.analysis.errors import OutOfRange
-
-T = TypeVar("T")
 
 HIGHEST: Final = 1 << 14
 """Bits at which a printed value that still straddles two doubles is taken to lie midway between them."""
@@ -63,17 +62,18 @@ def nearest_double(value: fmpq) -> float:
 
     Raises OutOfRange where a value that is not zero would become zero or infinite.
     """
+    return _in_range(int(value.numer()), int(value.denom()))
+
+
+def _in_range(above: int, below: int) -> float:
     try:
-        result = int(value.numer()) / int(value.denom())
+        result = above / below  # Python rounds the quotient of integers correctly, subnormals too
     except OverflowError:
-        raise OutOfRange(_beyond(value)) from None
-    if result == 0 and value != 0:
-        raise OutOfRange(_beyond(value))
+        result = math.inf
+    if result in {0, math.inf} and above != 0:
+        near = decimal30(fmpq(above, below))
+        raise OutOfRange(f"A value near {near} lies beyond the range of double precision numbers.")
     return result
-
-
-def _beyond(value: fmpq) -> str:
-    return f"A value near {decimal30(value)} lies beyond the range of double precision numbers."
 
 
 def decimal30(value: fmpq) -> str:
@@ -93,21 +93,42 @@ def _plain(value: Decimal) -> str:
 
 def rounded_double(enclose: Enclose) -> float:
     """Round a real number, not an exact tie below ``HIGHEST`` bits, to the nearest double."""
-    return _rounded(enclose, nearest_double, 64)
+    bits = 64
+    while (settled := double_in(enclose(bits))) is None and bits < HIGHEST:
+        bits *= 2
+    return nearest_double(dyadic(enclose(bits).mid())) if settled is None else settled
+
+
+def double_in(ball: arb) -> float | None:
+    """Return the double nearest to every number in the ball; None where there is none, or 0 is inside.
+
+    Raises OutOfRange as ``nearest_double`` does.
+    """
+    if not ball.is_finite() or ball.contains(0):
+        return None
+    (middle, e), (radius, f) = ball.mid().man_exp(), ball.rad().man_exp()
+    exponent = min(int(e), int(f))
+    centre, around = int(middle) << (int(e) - exponent), int(radius) << (int(f) - exponent)
+    first = _nearest(centre - around, exponent)
+    return first if first == _nearest(centre + around, exponent) else None
+
+
+def _nearest(mantissa: int, exponent: int) -> float:
+    """Round mantissa 2^exponent, not zero, to the nearest double."""
+    if exponent >= 0:
+        return _in_range(mantissa << exponent, 1)
+    return _in_range(mantissa, 1 << -exponent)
 
 
 def rounded_decimal(enclose: Enclose) -> str:
     """Round a real number to 30 significant digits."""
-    return _rounded(enclose, decimal30, 112)
-
-
-def _rounded(enclose: Enclose, to: Callable[[fmpq], T], bits: int) -> T:
+    bits = 112
     while True:
         ball = enclose(bits)
         low, high = ends(ball)
-        first = to(low)
-        if first == to(high):
+        first = decimal30(low)
+        if first == decimal30(high):
             return first
         if bits >= HIGHEST:
-            return to(dyadic(ball.mid()))
+            return decimal30(dyadic(ball.mid()))
         bits *= 2

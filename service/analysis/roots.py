@@ -20,6 +20,7 @@ from service.analysis.polynomials import sign, sign_variations
 from service.analysis.precision import accurate_bits, ends, working
 
 _MOST_CUTS = 400
+_MOST_HALVINGS = 80
 _ENCLOSED_BITS = 32
 _ALMOST_REAL = 1e-3  # a guess this near to the real axis may stand for a real root
 _SPREADS = (32, 14)  # bits: half width of the interval tried round a guess, relative to it
@@ -71,11 +72,16 @@ class PositiveRoot:
             with working(max(64, 2 * self.low.height_bits(), 2 * self.high.height_bits())):
                 ball = arb(self.low).union(arb(self.high))
         headroom = 32 + self.polynomial.degree()
+        halvings = 0
         while (known := accurate_bits(ball)) < bits:
+            if halvings == _MOST_HALVINGS:
+                ball = self._among_enclosures(max(bits, _ENCLOSED_BITS))
+                break
             with working(2 * known + headroom):
                 narrower = self._newton(ball)
             if narrower is None or accurate_bits(narrower) <= known:
                 ball = self._bisect(ball)
+                halvings += 1
                 headroom = min(2 * headroom, 8 * (known + bits) + self.polynomial.height_bits())
             else:
                 ball = narrower
@@ -83,6 +89,18 @@ class PositiveRoot:
                 return self.ball(bits)
         self._ball = ball
         return ball
+
+    def _among_enclosures(self, bits: int) -> arb:
+        """Pick this root from enclosures of all complex roots, where others are too near for halving."""
+        while True:
+            known = [ball for ball in _real_enclosures(self.polynomial, bits) if self._may_lie_in(ball)]
+            if len(known) == 1:
+                return known[0]
+            bits *= 2
+
+    def _may_lie_in(self, ball: arb) -> bool:
+        low, high = ends(ball)
+        return bool(low < self.high and self.low < high)
 
     def _newton(self, ball: arb) -> arb | None:
         slope = self._derivative(ball)
@@ -170,7 +188,8 @@ def isolate_positive(p: fmpz_poly) -> list[PositiveRoot]:
 
 def count_positive(p: fmpz_poly) -> int:
     """Count the positive real roots of a squarefree p with p(0) != 0."""
-    return len(isolate_positive(p))
+    most = sign_variations(p)
+    return most if most <= 1 else len(isolate_positive(p))
 
 
 def _guessed_brackets(p: fmpz_poly) -> Iterator[tuple[fmpq, fmpq]]:
@@ -228,10 +247,13 @@ def _halved(p: fmpz_poly, brackets: list[tuple[fmpq, fmpq]]) -> list[tuple[fmpq,
 
 def _enclosed(p: fmpz_poly) -> Iterator[tuple[fmpq, fmpq]]:
     """Yield isolating intervals of all positive roots, ascending, from enclosures of all complex ones."""
-    real = [root.real for root in enclose_roots(p, _ENCLOSED_BITS) if root.imag.is_zero()]
-    for low, high in sorted(ends(ball) for ball in real if ball > 0):
+    for low, high in sorted(ends(ball) for ball in _real_enclosures(p, _ENCLOSED_BITS) if ball > 0):
         root = low if p(low) == 0 else high if p(high) == 0 else None
         yield (low, high) if root is None else (root, root)
+
+
+def _real_enclosures(p: fmpz_poly, bits: int) -> list[arb]:
+    return [root.real for root in enclose_roots(p, bits) if root.imag.is_zero()]
 
 
 def _root_bounds(p: fmpz_poly) -> tuple[fmpq, fmpq]:

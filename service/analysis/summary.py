@@ -2,25 +2,28 @@
 
 from collections.abc import Iterator, Sequence
 
-from service.analysis.answer import Band, Commissioned, Edge, OpenLoop
+from service.analysis.answer import Band, Commissioned, Edge, OpenLoop, Verdict
+from service.analysis.bands import verdict_of
 from service.analysis.phrases import counted, edge_text, gain_text, listed, manner
-
-Window = tuple[str, str]
+from service.analysis.survey import Survey
 
 
 def summarise(
+    survey: Survey,
     open_loop: OpenLoop,
     edges: Sequence[Edge],
     bands: Sequence[Band],
     commissioned: Commissioned | None,
 ) -> str:
     """Summarise an answer whose parts are already written."""
+    where = "" if survey.window is None else " in the window"
     return " ".join(
         [
             *_hidden(open_loop),
-            *_stable(edges, bands),
+            *_stable(survey, edges, bands, where),
             *_ends(edges, bands),
             *_in_service(edges, bands, commissioned),
+            *_way_back(survey, commissioned, where),
         ]
     )
 
@@ -34,26 +37,20 @@ def _hidden(open_loop: OpenLoop) -> Iterator[str]:
         )
 
 
-def _stable(edges: Sequence[Edge], bands: Sequence[Band]) -> Iterator[str]:
-    stable = [_range(edges, bands, i) for i in _with_verdict(bands, "stable")]
-    if stable:
-        yield f"Stable for {listed(stable)}."
-    elif any(band.lower is not None and i == 0 for i, band in enumerate(bands)):
-        yield "No gain in the window is stable."
-    else:
-        yield "No gain is stable."
-    marginal = [_range(edges, bands, i) for i in _with_verdict(bands, "marginal")]
+def _stable(survey: Survey, edges: Sequence[Edge], bands: Sequence[Band], where: str) -> Iterator[str]:
+    stable = [_range(edges, bands, i) for i in _with_verdict(survey, "stable")]
+    yield f"Stable for {listed(stable)}." if stable else f"No gain{where} is stable."
+    marginal = [_range(edges, bands, i) for i in _with_verdict(survey, "marginal")]
     if marginal:
         yield f"Marginal, with poles that stay on the imaginary axis, for {listed(marginal)}."
 
 
-def _with_verdict(bands: Sequence[Band], verdict: str) -> list[int]:
+def _with_verdict(survey: Survey, verdict: Verdict) -> list[int]:
     """Return the bands of a verdict that hold a gain."""
     return [
         i
-        for i, band in enumerate(bands)
-        if band.verdict == verdict
-        and (band.lower is None or band.lower != band.upper or 0 < i < len(bands) - 1)
+        for i, (band, span) in enumerate(zip(survey.bands, survey.spans, strict=True))
+        if verdict_of(band.counts) == verdict and not span.empty
     ]
 
 
@@ -111,7 +108,6 @@ def _in_service(
         inside = _range(edges, bands, commissioned.band)
         place = "" if inside == "every K" else f" ({inside})"
         yield f"The gain in service, K = {gain}, is {_state(commissioned)}{place}."
-    yield from _way_back(bands, commissioned)
 
 
 def _state(commissioned: Commissioned) -> str:
@@ -123,10 +119,14 @@ def _state(commissioned: Commissioned) -> str:
         parts.append(f"{counted(right, 'pole')} right of the axis")
     if axis:
         parts.append(f"{counted(axis, 'pole')} on it" if right else f"{counted(axis, 'pole')} on the axis")
-    return f"{commissioned.verdict}, with {listed(parts)}"
+    repeated = ", repeated ones among them" if commissioned.verdict == "unstable" and not right else ""
+    return f"{commissioned.verdict}, with {listed(parts)}{repeated}"
 
 
-def _way_back(bands: Sequence[Band], commissioned: Commissioned) -> Iterator[str]:
+def _way_back(survey: Survey, commissioned: Commissioned | None, where: str) -> Iterator[str]:
+    """Say how far it is to a stable band, from a gain that is in none."""
+    if commissioned is None or commissioned.verdict == "stable":
+        return
     nearest = commissioned.nearest_stable
     if nearest is not None:
         low, high = nearest.ratio_from, nearest.ratio_to
@@ -137,9 +137,5 @@ def _way_back(bands: Sequence[Band], commissioned: Commissioned) -> Iterator[str
         else:
             factor = f"a factor between {low:.4g} and {high:.4g}"
         yield f"The nearest stable band lies {factor} away."
-    elif (
-        commissioned.verdict != "stable"
-        and commissioned.gain != 0
-        and any(band.verdict == "stable" for band in bands)
-    ):
-        yield "No gain of its sign is stable."
+    elif commissioned.gain != 0 and _with_verdict(survey, "stable"):
+        yield f"No gain of its sign{where} is stable."

@@ -8,10 +8,11 @@ import numpy as np
 import pytest
 import scipy.linalg
 import sympy  # type: ignore[import-untyped]  # SymPy ships no types
-from hypothesis import assume, given, settings
+from hypothesis import assume, given
 from hypothesis import strategies as st
 
 from tests.asking import DIGITS, ask, band_ends, edge_gain, gains_inside
+from tests.effort import examples
 from tests.oracle import Loop, closed_loop, event_polynomial, is_lossless, real_roots, reduced
 from tests.polynomials import degree, polynomial, squarefree_factors
 from tests.strategies import FAMILIES, negative_lead, non_zeros, plain, poles_on_the_axis
@@ -96,7 +97,7 @@ def correctly_rounded(decimal: str, value: Fraction) -> bool:
 
 
 @given(loop=modest)
-@settings(max_examples=60)
+@examples(60)
 def test_crossings_are_the_exact_roots_sympy_finds(loop: Loop) -> None:
     unmatched = crossings_by_sympy(loop)
     for edge in ask(loop).edges:
@@ -113,7 +114,7 @@ def test_crossings_are_the_exact_roots_sympy_finds(loop: Loop) -> None:
 
 
 @given(loop=modest)
-@settings(max_examples=40)
+@examples(40)
 def test_exact_forms_are_those_sympy_would_write(loop: Loop) -> None:
     """An exact text is the value; a gain without one is no fraction of a few digits, nor is its square."""
     for edge in ask(loop).edges:
@@ -136,7 +137,7 @@ def closed_loop_roots(loop: Loop, gain: Fraction) -> list[mpmath.mpc]:
 
 
 @given(loop=st.one_of(plain(), poles_on_the_axis(), negative_lead()))
-@settings(max_examples=60)
+@examples(60)
 def test_at_an_edge_s_decimal_a_root_lies_on_the_axis_at_its_frequency(loop: Loop) -> None:
     """30 digits of a gain pin a simple root to nearly as many; a multiple one to a third of them."""
     small = reduced(loop)
@@ -167,7 +168,7 @@ def axis_gains(loop: Loop) -> list[Fraction]:
 
 @pytest.mark.parametrize("family", ["touching", "touching_irrationally", "meeting", "tied", "plain"])
 @given(data=st.data())
-@settings(max_examples=25)
+@examples(25)
 def test_edges_are_all_the_gains_with_a_root_on_the_axis(family: str, data: st.DataObject) -> None:
     """Touches included, which change no count, and gains that are no fractions."""
     loop = data.draw(FAMILIES[family])
@@ -196,7 +197,7 @@ def float_counts(roots: np.ndarray, count: int) -> int | None:
 
 
 @given(loop=st.one_of(*FAMILIES.values()), gain=non_zeros)
-@settings(max_examples=200)
+@examples(200)
 def test_well_conditioned_counts_are_those_of_numpy_and_scipy(loop: Loop, gain: Fraction) -> None:
     closed = closed_loop(loop, gain)
     assume(degree(closed) > 0)
@@ -213,7 +214,7 @@ def test_well_conditioned_counts_are_those_of_numpy_and_scipy(loop: Loop, gain: 
 
 
 @given(loop=st.one_of(*FAMILIES.values()), gain=non_zeros)
-@settings(max_examples=60)
+@examples(60)
 def test_closed_loop_poles_are_the_roots_mpmath_finds(loop: Loop, gain: Fraction) -> None:
     closed = closed_loop(loop, gain)
     commissioned = ask(loop, gain=gain).commissioned

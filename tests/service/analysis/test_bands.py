@@ -3,6 +3,7 @@
 from collections.abc import Callable
 from fractions import Fraction
 from itertools import count, pairwise
+from math import isqrt
 
 import pytest
 from flint import arb, fmpq
@@ -159,6 +160,18 @@ def test_gain_cells_hold_their_gains_and_are_disjoint(loop: Loop) -> None:
         with working(400):
             assert not arb(low) > edge.gain.ball(300)
             assert not arb(high) < edge.gain.ball(300)
+
+
+@pytest.mark.parametrize("decade", [5, 30, 100])
+def test_no_cell_reaches_a_wall(decade: int) -> None:
+    """Walls at 3 + sqrt(5), cut off after so many digits, and one unit further."""
+    edges = edges_of(Loop(P(1, 1, 8), P(1, 1, 1, -3)))
+    low = 3 + Fraction(isqrt(5 * 100**decade), 10**decade)
+    walls = [(2, rational(low)), (3, rational(low + Fraction(1, 10**decade)))]
+    cells = gain_cells(edges, walls)
+    assert len(cells) == len(edges)
+    assert walls[0][1] < cells[2][0] < cells[2][1] < walls[1][1]
+    assert cells[:2] == gain_cells(edges)[:2]
 
 
 def test_a_cell_of_several_frequencies_holds_one_root_of_the_minimal_polynomial() -> None:

@@ -2,6 +2,7 @@
 
 from fractions import Fraction
 from itertools import pairwise
+from math import inf
 
 import pytest
 from hypothesis import given, settings
@@ -40,6 +41,13 @@ def place(at: PositiveRoot | str) -> Fraction | str:
         return at
     assert at.rational is not None
     return fraction(at.rational)
+
+
+def position(at: PositiveRoot | str) -> float:
+    """Give the squared frequency as a double, the origin's below all others."""
+    if isinstance(at, str):
+        return {ORIGIN: -1.0, INFINITY: inf}[at]
+    return float(at.ball(60))
 
 
 def closing_to(closed: Polynomial, numerator: Polynomial) -> tuple[RawEdge, ...]:
@@ -86,6 +94,13 @@ def test_a_zero_at_the_origin_leaves_no_edge_there() -> None:
     assert all("origin" not in edge.causes for edge in edges(P(1, 0), P(1, 2, 3)))
 
 
+@pytest.mark.parametrize("shared", [P(1), P(1, 0, 1), P(1, 2)], ids=["plain", "hidden pair", "hidden lag"])
+def test_a_constant_loop_has_one_edge_at_infinity_alone(shared: Polynomial) -> None:
+    """One gain at all frequencies: the algebraic loop."""
+    found = edges(scaled(shared, 2), shared)
+    assert told(found) == [(Fraction(-1, 2), ("infinity",), [INFINITY])]
+
+
 def test_two_frequencies_at_one_gain_are_one_edge() -> None:
     merged = closing_to(multiply(PAIRS, P(1, 1)), P(1, 2))
     assert (1, ("crossing",), [1, 4]) in told(merged)
@@ -123,7 +138,6 @@ def test_edges_strictly_ascend_and_their_places_do(loop: Loop) -> None:
     found = edges(*loop)
     assert all(compare(one.gain, other.gain) == -1 for one, other in pairwise(found))
     for edge in found:
-        order = [-1.0 if at == ORIGIN else float("inf") if at == INFINITY else float(at.ball(60))
-                 for at in edge.places if isinstance(at, (str, PositiveRoot))]  # fmt: skip
+        order = [position(at) for at in edge.places]
         assert order == sorted(order)
         assert len(edge.places) >= len(edge.causes)

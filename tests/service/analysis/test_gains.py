@@ -145,12 +145,14 @@ def test_near_ties_are_no_ties(decade: int) -> None:
 
 
 @given(values=st.lists(fractions, min_size=2, max_size=6))
+@settings(max_examples=50)
 def test_rational_gains_sort_as_fractions(values: list[Fraction]) -> None:
     ordered = sorted((Gain(rational(value)) for value in values), key=by_gain)
     assert [fraction(g.rational) for g in ordered if g.rational is not None] == sorted(values)
 
 
 @given(one=fractions, other=fractions)
+@settings(max_examples=50)
 def test_rational_gains_compare_as_fractions(one: Fraction, other: Fraction) -> None:
     expected = (one > other) - (one < other)
     assert compare(Gain(rational(one)), Gain(rational(other))) == expected

@@ -46,7 +46,7 @@ def product_of(chosen: set[Fraction]) -> Polynomial:
 
 
 @given(chosen=st.sets(sizes, max_size=5), rest=without_positive_root, lead=st.sampled_from([1, -3]))
-@settings(max_examples=60)
+@settings(max_examples=40)
 def test_chosen_roots_are_all_found_in_ascending_order_and_known_to_be_rational(
     chosen: set[Fraction], rest: Polynomial, lead: int
 ) -> None:
@@ -56,7 +56,7 @@ def test_chosen_roots_are_all_found_in_ascending_order_and_known_to_be_rational(
 
 
 @given(chosen=st.sets(sizes, min_size=1, max_size=5), rest=without_positive_root)
-@settings(max_examples=60)
+@settings(max_examples=40)
 def test_every_bracket_holds_its_root_and_no_other(chosen: set[Fraction], rest: Polynomial) -> None:
     for root in isolate_positive(integral(multiply(product_of(chosen), rest))):
         low, high = fraction(root.low), fraction(root.high)
@@ -66,7 +66,7 @@ def test_every_bracket_holds_its_root_and_no_other(chosen: set[Fraction], rest: 
 
 
 @given(chosen=st.sets(sizes, min_size=1, max_size=4), rest=without_positive_root, bits=st.integers(1, 600))
-@settings(max_examples=60)
+@settings(max_examples=40)
 def test_a_ball_holds_the_root_as_accurately_as_asked(
     chosen: set[Fraction], rest: Polynomial, bits: int
 ) -> None:
@@ -93,7 +93,7 @@ def test_square_roots_that_are_no_integers_are_irrational(squares: set[int]) -> 
     steps=st.sets(st.integers(-5, 5), min_size=2, max_size=5),
     decade=st.integers(20, 80),
 )
-@settings(max_examples=40)
+@settings(max_examples=20)
 def test_roots_far_closer_than_doubles_are_told_apart(centre: Fraction, steps: set[int], decade: int) -> None:
     chosen = {centre + Fraction(step, 10**decade) for step in steps}
     found = isolate_positive(integral(product_of(chosen)))

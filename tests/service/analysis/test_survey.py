@@ -1,6 +1,7 @@
 """The survey of the whole gain axis, its windows, and its refusal where the counts differ."""
 
 from fractions import Fraction
+from math import isqrt
 
 import pytest
 from flint import fmpq
@@ -65,6 +66,19 @@ def test_a_window_is_closed_and_ends_the_outer_bands(
     assert ends(found) == expected
     assert [span.empty for span in found.spans] == [low == high for low, high in expected]
     assert len(found.cells) == len(found.edges) == len(found.bands) - 1
+
+
+def test_a_window_may_end_however_near_an_irrational_edge() -> None:
+    """The edge 3 + sqrt(5) lies within 1e-40 of either end: both bands beside it hold a gain."""
+    low = 3 + Fraction(isqrt(5 * 100**40), 10**40)
+    high = low + Fraction(1, 10**40)
+    window = fmpq(low.numerator, low.denominator), fmpq(high.numerator, high.denominator)
+    found = survey(exact_loop(Loop(P(1, 1, 8), P(1, 1, 1, -3))), "right", window)
+    assert len(found.edges) == 1
+    assert [span.empty for span in found.spans] == [False, False]
+    assert [band.counts.rhp for band in found.bands] == [2, 0]
+    assert window[0] < found.bands[0].sample < found.cells[0][0]
+    assert found.cells[0][1] < found.bands[1].sample < window[1]
 
 
 @given(low=st.fractions(-3, 12, max_denominator=7), width=st.fractions(Fraction(1, 9), 9, max_denominator=9))
