@@ -6,19 +6,19 @@ What remains has no such pair, and Routh's scheme in the form of Stieltjes' cont
 even and odd parts counts its right half plane roots, with quotients of any odd degree, so that no row
 can vanish (F. R. Gantmacher, The Theory of Matrices, vol. 2, ch. XV, sections 2 to 14).
 
-Most polynomials are regular: every quotient is linear. Then the signs of Routh's first column settle
-everything, and ball arithmetic proves them at a fraction of the cost of exact remainders. A column
-entry whose sign the balls leave open sends the polynomial the exact way.
+Only the signs of the remainders' leading coefficients count, and ball arithmetic proves most of them at
+a fraction of the cost of exact remainders. One that the balls leave open sends the polynomial the exact
+way.
 """
 
 from dataclasses import dataclass
 
-from flint import arb_poly, fmpz, fmpz_poly
+from flint import arb_poly, fmpz_poly
 
 from service.analysis.polynomials import (
     mirrored,
     parity_parts,
-    primitive,
+    remainder,
     sign,
     squarefree_levels,
     strip_origin,
@@ -52,9 +52,9 @@ def count_roots(p: fmpz_poly) -> Counts:
     """
     rest, at_origin = strip_origin(p)
     even, odd = parity_parts(rest)
-    regular = _right_of_axis_if_regular(even, odd)
-    if regular is not None:
-        return Counts(regular, at_origin, at_origin > 1)
+    proven = _right_of_axis_by_balls(even, odd)
+    if proven is not None:
+        return Counts(proven, at_origin, at_origin > 1)
     shared = even.gcd(odd)
     pairs = _count_pairs(shared)
     remaining = _right_of_axis(even // shared, odd // shared)
@@ -75,29 +75,33 @@ def _count_pairs(shared: fmpz_poly) -> Counts:
     return Counts(shared.degree() - negative, 2 * negative, repeated)
 
 
-def _right_of_axis_if_regular(even: fmpz_poly, odd: fmpz_poly) -> int | None:
-    """Count as ``_right_of_axis`` where every entry of Routh's first column has a proven sign, else None.
+def _right_of_axis_by_balls(even: fmpz_poly, odd: fmpz_poly) -> int | None:
+    """Count as ``_right_of_axis`` where every leading coefficient has a proven sign, else None.
 
-    A full column also proves that the parts are coprime: there is no pair symmetric to the origin.
+    That also proves that the parts are coprime: there is no pair symmetric to the origin.
     """
     order = max(2 * even.degree(), 2 * odd.degree() + 1)
     with working(64 + 6 * order):
         high, low = (even, odd) if order % 2 == 0 else (odd, even)
         upper, lower = arb_poly(high), arb_poly(low)
-        positive_before = high.leading_coefficient() > 0
-        changes = 0
-        for step in range(order, 0, -1):
-            if lower.degree() != (step - 1) // 2:
-                return None
+        above = upper[upper.degree()]
+        shift = 1 - order % 2
+        balance = 0
+        while True:
+            least = lower.degree() + shift
             lead = lower[lower.degree()]
-            if lead.contains(0):
+            if lower.degree() < 0 or lead.contains(0):
                 return None
-            positive = lead > 0
-            changes += positive != positive_before
-            positive_before = positive
-            eliminated = upper - (lower * (upper[upper.degree()] / lead)).left_shift((step + 1) % 2)
-            upper, lower = lower, eliminated.truncate(step // 2)
-    return changes
+            steps = upper.degree() - least
+            balance += -1 if (steps & 1) != (bool(above > 0) != bool(lead > 0)) else 1
+            if least == 0:
+                return (order - balance) // 2
+            for k in range(steps, -1, -1):
+                eliminated = upper - (lower * (upper[least + k] / lead)).left_shift(shift + k)
+                upper = eliminated.truncate(least + k)
+            if upper.degree() != least - 1:
+                return None
+            upper, lower, above, shift = lower, upper, lead, 1 - shift
 
 
 def _right_of_axis(even: fmpz_poly, odd: fmpz_poly) -> int:
@@ -114,19 +118,6 @@ def _right_of_axis(even: fmpz_poly, odd: fmpz_poly) -> int:
         steps = high.degree() - low.degree() - shift
         ahead = sign(high.leading_coefficient()) * sign(low.leading_coefficient())
         balance += -ahead if steps & 1 else ahead
-        high, low = low, _remainder(high, low, shift)
+        high, low = low, remainder(high, low, shift)
         shift = 1 - shift
     return (order - balance) // 2
-
-
-def _remainder(high: fmpz_poly, low: fmpz_poly, shift: int) -> fmpz_poly:
-    """A positive multiple of ``high`` modulo (y^shift ``low``), of content 1."""
-    lead = low.leading_coefficient()
-    least = low.degree() + shift
-    while high.degree() >= least and not high.is_zero():
-        top = high.leading_coefficient()
-        common = fmpz(lead).gcd(top)
-        high = high * (abs(lead) // common) - (low * (sign(lead) * top // common)).left_shift(
-            high.degree() - low.degree()
-        )
-    return primitive(high)

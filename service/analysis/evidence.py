@@ -8,17 +8,18 @@ interval arithmetic to bracket each gain.
 from functools import partial
 from typing import Final
 
-from flint import fmpq, fmpz_poly
+from flint import arb, fmpz_poly
 
 from service.analysis.answer import BandEvidence, EdgeEvidence, Evidence
 from service.analysis.bands import Cell, dyadic_cell, separate_cells
 from service.analysis.edges import ORIGIN, Place, RawEdge
 from service.analysis.loop import AxisView
+from service.analysis.precision import working
 from service.analysis.roots import PositiveRoot, by_frequency
 from service.analysis.survey import Survey
 
 _SQUARE_BITS: Final = 192
-_SPARE: Final = 1 << 16  # by how much the bracket of a gain is narrower than the interval that holds it
+_SPARE: Final = 1 << 16  # by how much the bracket of a gain is to be narrower than the room it has
 
 
 def gather(survey: Survey) -> Evidence:
@@ -78,31 +79,19 @@ def _square_cell(view: AxisView, root: PositiveRoot, gain_cell: Cell | None, bit
         return x, x
     while True:
         cell = dyadic_cell(root.ball, bits)
-        if gain_cell is None or _brackets(view, cell, gain_cell):
+        if gain_cell is None or _brackets(view, cell, gain_cell, bits):
             return cell
         bits *= 2
 
 
-def _brackets(view: AxisView, square: Cell, gain: Cell) -> bool:
-    """Whether interval arithmetic puts K well inside its interval.
-
-    With K = -(De Ne + x Do No)/(Ne^2 + x No^2), every power of x taken apart: no scheme does worse.
-    """
-    x = fmpz_poly([0, 1])
+def _brackets(view: AxisView, square: Cell, gain: Cell, bits: int) -> bool:
+    """Whether interval arithmetic puts K = -(De Ne + x Do No)/(Ne^2 + x No^2) well inside its interval."""
     ne, no = view.numerator_even, view.numerator_odd
-    above = _range(-(view.denominator_even * ne + x * view.denominator_odd * no), square)
-    below = _range(ne * ne + x * no * no, square)
-    if below[0] <= 0:
-        return False
-    ends = [a / b for a in above for b in below]
-    low, high = min(ends), max(ends)
-    spare = (high - low) * _SPARE
-    return bool(gain[0] < low - spare and high + spare < gain[1])
-
-
-def _range(p: fmpz_poly, x: Cell) -> Cell:
-    """Bound p over an interval of positive x, term by term."""
-    coefficients = p.coeffs()
-    positive = fmpz_poly([c * (c > 0) for c in coefficients])
-    negative = fmpz_poly([c * (c < 0) for c in coefficients])
-    return fmpq(positive(x[0]) + negative(x[1])), fmpq(positive(x[1]) + negative(x[0]))
+    with working(4 * bits):
+        x = arb(square[0]).union(arb(square[1]))
+        above = view.denominator_even * ne + fmpz_poly([0, 1]) * view.denominator_odd * no
+        found = -above(x) / (ne * ne + fmpz_poly([0, 1]) * no * no)(x)
+        if not found.is_finite():
+            return False
+        spare = found.rad() * _SPARE
+        return bool(arb(gain[0]) < found.mid() - spare and found.mid() + spare < arb(gain[1]))

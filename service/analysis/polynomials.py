@@ -81,3 +81,16 @@ def shifted(value: int, bits: int) -> int:
     if bits >= 0:
         return value << bits
     return value >> -bits if value >= 0 else -(-value >> -bits)
+
+
+def remainder(high: fmpz_poly, low: fmpz_poly, shift: int = 0) -> fmpz_poly:
+    """Return a positive multiple of ``high`` modulo (x^shift ``low``), of content 1."""
+    lead = low.leading_coefficient()
+    least = low.degree() + shift
+    while high.degree() >= least and not high.is_zero():
+        top = high.leading_coefficient()
+        common = fmpz(lead).gcd(top)
+        high = high * (abs(lead) // common) - (low * (sign(lead) * top // common)).left_shift(
+            high.degree() - low.degree()
+        )
+    return primitive(high)

@@ -16,8 +16,8 @@ from flint import arb, fmpq, fmpz, fmpz_poly
 
 from service.analysis.enclosures import enclose_roots
 from service.analysis.guesses import guess_roots
-from service.analysis.polynomials import sign, sign_variations
-from service.analysis.precision import accurate_bits, ends, working
+from service.analysis.polynomials import remainder, sign, sign_variations
+from service.analysis.precision import accurate_bits, dyadic, ends, working
 
 _MOST_CUTS = 400
 _MOST_HALVINGS = 80
@@ -105,9 +105,28 @@ class PositiveRoot:
     def _newton(self, ball: arb) -> arb | None:
         slope = self._derivative(ball)
         if not slope.is_finite() or slope.contains(0):
-            return None
+            return self._probed(ball)
         middle = ball.mid()
         return (middle - self.polynomial(middle) / slope).intersection(ball)
+
+    def _probed(self, ball: arb) -> arb | None:
+        """Take a Newton step from the middle, proven by the signs on both sides of where it leads.
+
+        That works where the slope over the whole ball cannot be bounded away from 0.
+        """
+        middle = ball.mid()
+        target = (middle - self.polynomial(middle) / self._derivative(middle)).mid()
+        if not target.is_finite():
+            return None
+        known = accurate_bits(ball)
+        for gained in (known, known // 2, 3):
+            reach = ball.rad() * arb(2) ** -gained
+            low, high = (target - reach).mid(), (target + reach).mid()
+            if self.low < dyadic(low) and dyadic(high) < self.high:
+                before, after = self.polynomial(low), self.polynomial(high)
+                if (before > 0 and after < 0) or (before < 0 and after > 0):
+                    return low.union(high)
+        return None
 
     def _bisect(self, ball: arb) -> arb:
         """Halve what is known by an exact sign, at a cut near the middle of the ball."""
@@ -189,7 +208,25 @@ def isolate_positive(p: fmpz_poly) -> list[PositiveRoot]:
 def count_positive(p: fmpz_poly) -> int:
     """Count the positive real roots of a squarefree p with p(0) != 0."""
     most = sign_variations(p)
-    return most if most <= 1 else len(isolate_positive(p))
+    return most if most <= 1 else _sturm_count(p)
+
+
+def _sturm_count(p: fmpz_poly) -> int:
+    """Count the positive roots of a squarefree p as the sign variations lost between 0 and infinity.
+
+    The chain is Sturm's (1829), of primitive remainders.
+    """
+    chain = [p, p.derivative()]
+    while chain[-1].degree() > 0:
+        chain.append(-remainder(chain[-2], chain[-1]))
+    at_origin = [sign(q[0]) for q in chain]
+    at_infinity = [sign(q.leading_coefficient()) for q in chain]
+    return _changes(at_origin) - _changes(at_infinity)
+
+
+def _changes(signs: list[int]) -> int:
+    told = [s for s in signs if s]
+    return sum(a != b for a, b in pairwise(told))
 
 
 def _guessed_brackets(p: fmpz_poly) -> Iterator[tuple[fmpq, fmpq]]:
