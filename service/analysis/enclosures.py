@@ -54,10 +54,11 @@ def enclose_roots(p: fmpz_poly, bits: int) -> list[acb]:
 
     Raises TooHard where the roots cannot be told apart at the highest precision.
     """
-    eigenvalues, exponent = guess_roots(p)
-    centres = [exactly(u, exponent) for u in eigenvalues.tolist() if u.imag >= 0]
+    guessed = [exactly(u, exponent) for u, exponent in guess_roots(p)]
     precision = bits + 64
-    found, guesses = _tried(p, centres, bits, precision)
+    found, guesses = _tried(p, [z for z in guessed if z.imag >= 0], bits, precision)
+    if len(guesses) != p.degree():
+        guesses = [Guess(z, arb.pos_inf()) for z in guessed]
     precision += p.height_bits()
     while found is None and precision < _HIGHEST_BITS:
         guesses, apart = separate(p, guesses, bits, precision)

@@ -149,7 +149,9 @@ class Gain:
     def alone_in(self, cell: tuple[fmpq, fmpq]) -> bool:
         """Whether the minimal polynomial is proven to have no other root in an interval round this gain."""
         bits = 2 * max(cell[0].height_bits(), cell[1].height_bits()) + 16
-        return _one_root_between(self.minimal_polynomial, arb(cell[0]), arb(cell[1]), bits)
+        with working(bits):
+            low, high = arb(cell[0]), arb(cell[1])
+        return _one_root_between(self.minimal_polynomial, low, high, bits)
 
     def ball(self, bits: int) -> arb:
         """Enclose the gain with at least ``bits`` accurate bits."""

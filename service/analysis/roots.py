@@ -11,7 +11,6 @@ from collections.abc import Iterator
 from functools import cmp_to_key
 from itertools import pairwise
 
-import numpy as np
 from flint import arb, fmpq, fmpz, fmpz_poly
 
 from service.analysis.enclosures import enclose_roots
@@ -19,11 +18,26 @@ from service.analysis.guesses import guess_roots
 from service.analysis.polynomials import remainder, sign, sign_variations
 from service.analysis.precision import accurate_bits, dyadic, ends, working
 
-_MOST_CUTS = 400
+_MOST_CUTS = 160
 _MOST_HALVINGS = 80
 _ENCLOSED_BITS = 32
 _ALMOST_REAL = 1e-3  # a guess this near to the real axis may stand for a real root
 _SPREADS = (32, 14)  # bits: half width of the interval tried round a guess, relative to it
+
+
+class Enclosures:
+    """Enclosures of a polynomial's real roots, made when first asked for and shared by these roots."""
+
+    def __init__(self, polynomial: fmpz_poly) -> None:
+        self._polynomial = polynomial
+        self._made: dict[int, list[arb]] = {}
+
+    def real(self, bits: int) -> list[arb]:
+        """Return disjoint balls round the real roots, radius below 2^-bits of their size."""
+        if bits not in self._made:
+            found = enclose_roots(self._polynomial, bits)
+            self._made[bits] = [root.real for root in found if root.imag.is_zero()]
+        return self._made[bits]
 
 
 class PositiveRoot:
@@ -33,10 +47,13 @@ class PositiveRoot:
     narrows what is known; the root stays the same.
     """
 
-    __slots__ = ("_ball", "_derivative", "_settled", "high", "low", "polynomial")
+    __slots__ = ("_ball", "_derivative", "_enclosures", "_settled", "high", "low", "polynomial")
 
-    def __init__(self, polynomial: fmpz_poly, low: fmpq, high: fmpq) -> None:
+    def __init__(
+        self, polynomial: fmpz_poly, low: fmpq, high: fmpq, enclosures: "Enclosures | None" = None
+    ) -> None:
         self.polynomial = polynomial
+        self._enclosures = enclosures or Enclosures(polynomial)
         self.low = low
         self.high = high
         self._ball: arb | None = None
@@ -93,7 +110,7 @@ class PositiveRoot:
     def _among_enclosures(self, bits: int) -> arb:
         """Pick this root from enclosures of all complex roots, where others are too near for halving."""
         while True:
-            known = [ball for ball in _real_enclosures(self.polynomial, bits) if self._may_lie_in(ball)]
+            known = [ball for ball in self._enclosures.real(bits) if self._may_lie_in(ball)]
             if len(known) == 1:
                 return known[0]
             bits *= 2
@@ -198,11 +215,12 @@ def isolate_positive(p: fmpz_poly) -> list[PositiveRoot]:
     if p.degree() == 1:
         value = -fmpq(p[0], p[1])
         return [PositiveRoot(p, value, value)]
+    enclosures = Enclosures(p)
     brackets = list(_guessed_brackets(p))
     if len(brackets) < variations:
         halved = _halved(p, brackets)
-        brackets = list(_enclosed(p)) if halved is None else halved
-    return [PositiveRoot(p, low, high) for low, high in brackets]
+        brackets = list(_enclosed(p, enclosures)) if halved is None else halved
+    return [PositiveRoot(p, low, high, enclosures) for low, high in brackets]
 
 
 def count_positive(p: fmpz_poly) -> int:
@@ -249,10 +267,12 @@ def _around(guess: fmpq, spread: int) -> tuple[fmpq, fmpq]:
 
 def _guesses(p: fmpz_poly) -> list[fmpq]:
     """Guess the positive real roots, ascending."""
-    found, exponent = guess_roots(p)
-    scale = power_of_two(exponent)
-    near = found.real[(np.abs(found.imag) <= _ALMOST_REAL * found.real) & (found.real > 0)]
-    return [fmpq(*u.as_integer_ratio()) * scale for u in sorted({float(u) for u in near})]
+    near = {
+        (u.real, exponent)
+        for u, exponent in guess_roots(p)
+        if u.real > 0 and abs(u.imag) <= _ALMOST_REAL * u.real
+    }
+    return sorted(fmpq(*u.as_integer_ratio()) * power_of_two(exponent) for u, exponent in near)
 
 
 def _halved(p: fmpz_poly, brackets: list[tuple[fmpq, fmpq]]) -> list[tuple[fmpq, fmpq]] | None:
@@ -282,15 +302,11 @@ def _halved(p: fmpz_poly, brackets: list[tuple[fmpq, fmpq]]) -> list[tuple[fmpq,
     return None
 
 
-def _enclosed(p: fmpz_poly) -> Iterator[tuple[fmpq, fmpq]]:
+def _enclosed(p: fmpz_poly, enclosures: Enclosures) -> Iterator[tuple[fmpq, fmpq]]:
     """Yield isolating intervals of all positive roots, ascending, from enclosures of all complex ones."""
-    for low, high in sorted(ends(ball) for ball in _real_enclosures(p, _ENCLOSED_BITS) if ball > 0):
+    for low, high in sorted(ends(ball) for ball in enclosures.real(_ENCLOSED_BITS) if ball > 0):
         root = low if p(low) == 0 else high if p(high) == 0 else None
         yield (low, high) if root is None else (root, root)
-
-
-def _real_enclosures(p: fmpz_poly, bits: int) -> list[arb]:
-    return [root.real for root in enclose_roots(p, bits) if root.imag.is_zero()]
 
 
 def _root_bounds(p: fmpz_poly) -> tuple[fmpq, fmpq]:

@@ -38,7 +38,6 @@ from tests.strategies import (
     detours,
     feedbacks,
     lossless,
-    non_zeros,
     positives,
 )
 
@@ -68,43 +67,6 @@ def test_every_band_has_the_oracle_s_counts_throughout(
         for gain in gains_inside(lower, upper, share):
             closed = closed_loop(loop, gain, feedback)
             assert (band.rhp_poles, band.axis_poles, band.verdict) == (*counts(closed), verdict(closed)), gain
-
-
-@in_every_family
-@given(data=st.data())
-@examples(30)
-def test_the_counts_at_a_rational_edge_are_its_own(
-    family: st.SearchStrategy[Loop], data: st.DataObject
-) -> None:
-    loop, feedback = data.draw(family), data.draw(feedbacks)
-    for edge in filter(is_rational, ask(loop, feedback=feedback).edges):
-        commissioned = ask(loop, feedback=feedback, gain=edge_gain(edge)).commissioned
-        expected = counts_at_edge(loop, edge, feedback)
-        assert commissioned is not None
-        assert commissioned.band is None
-        assert (commissioned.rhp_poles, commissioned.axis_poles) == (expected or (None, None))
-
-
-@in_every_family
-@given(data=st.data())
-@examples(30)
-def test_the_counts_at_a_commissioned_gain_are_the_oracle_s(
-    family: st.SearchStrategy[Loop], data: st.DataObject
-) -> None:
-    loop, feedback, gain = data.draw(family), data.draw(feedbacks), data.draw(non_zeros)
-    found = ask(loop, feedback=feedback, gain=gain)
-    closed = closed_loop(loop, gain, feedback)
-    assert found.commissioned is not None
-    assert Fraction(found.commissioned.exact) == gain
-    if found.commissioned.verdict != "ill_posed":
-        assert (found.commissioned.rhp_poles, found.commissioned.axis_poles) == counts(closed)
-        assert found.commissioned.verdict == verdict(closed)
-    if found.commissioned.band is None:
-        assert gain in map(edge_gain, found.edges)
-    else:
-        lower, upper = band_ends(found)[found.commissioned.band]
-        assert lower is None or lower < gain
-        assert upper is None or gain < upper
 
 
 @given(loop=any_loops, feedback=feedbacks)
@@ -262,34 +224,6 @@ def test_the_outermost_counts_hold_far_out(loop: Loop, exponent: int) -> None:
     far = furthest * 10**exponent
     assert band_counts(found)[0] == closed_loop_counts(loop, -far)
     assert band_counts(found)[-1] == closed_loop_counts(loop, far)
-
-
-def nearest_stable_band(found: Answer, gain: Fraction) -> int | None:
-    """Find the stable band that the least factor takes the gain to, of a tie the one towards zero."""
-    factors = {}
-    for i, (band, (lower, upper)) in enumerate(zip(found.bands, band_ends(found), strict=True)):
-        low, high = (lower, upper) if gain > 0 else (upper, lower)
-        start = Fraction(0) if low is None else max(Fraction(0), low / gain)
-        end = None if high is None else high / gain
-        if band.verdict == "stable" and (end is None or end > 0):
-            factors[i] = max(Fraction(1), start, Fraction(1) if end is None else 1 / end), start
-    return min(factors, key=lambda i: factors[i], default=None)
-
-
-@given(loop=any_loops, gain=non_zeros)
-@examples(200)
-def test_the_nearest_stable_band_is_nearest_by_ratio(loop: Loop, gain: Fraction) -> None:
-    found = ask(loop, gain=gain)
-    assert found.commissioned is not None
-    nearest = found.commissioned.nearest_stable
-    if found.commissioned.verdict == "stable":
-        assert nearest is None
-    else:
-        assert (nearest and nearest.band) == nearest_stable_band(found, gain)
-    if nearest:
-        ends = band_ends(found)[nearest.band][:: 1 if gain > 0 else -1]
-        for ratio, end in zip((nearest.ratio_from, nearest.ratio_to), ends, strict=True):
-            assert ratio == (None if end is None else pytest.approx(float(end / gain), rel=1e-15))
 
 
 @given(loop=any_loops, feedback=feedbacks)

@@ -90,7 +90,7 @@ def test_any_small_polynomial_counts_as_the_oracle_says(coefficients: list[int])
 def test_balls_and_exact_remainders_count_alike(coefficients: list[int]) -> None:
     p = fmpz_poly(coefficients)
     with pytest.MonkeyPatch.context() as patch:
-        patch.setattr(module, "_right_of_axis_if_regular", lambda _even, _odd: None)
+        patch.setattr(module, "_right_of_axis_by_balls", lambda _even, _odd: None)
         exactly = count_roots(p)
     assert count_roots(p) == exactly
 

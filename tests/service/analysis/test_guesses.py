@@ -19,16 +19,23 @@ def test_real_guesses_are_near_the_roots_at_any_scale(ones: set[int], scale: int
     p = fmpz_poly([1])
     for root in ones:
         p *= fmpz_poly([-root << scale, 1] if scale >= 0 else [-root, 1 << -scale])
-    found, exponent = guess_roots(p)
-    assert np.all(found.imag == 0)
-    levelled = sorted(float(u) * 2.0 ** (exponent - scale) for u in found.real)
+    found = guess_roots(p)
+    assert all(u.imag == 0 for u, _ in found)
+    levelled = sorted(u.real * 2.0 ** (exponent - scale) for u, exponent in found)
     assert levelled == pytest.approx(sorted(ones), rel=1e-6)
 
 
 def test_complex_guesses_come_in_conjugate_pairs() -> None:
-    found, exponent = guess_roots(fmpz_poly([5, -4, 1]) * fmpz_poly([3, 1]))
-    values = sorted((complex(u) * 2.0**exponent for u in found), key=lambda u: (u.real, u.imag))
+    found = guess_roots(fmpz_poly([5, -4, 1]) * fmpz_poly([3, 1]))
+    values = sorted((u * 2.0**exponent for u, exponent in found), key=lambda u: (u.real, u.imag))
     assert values == pytest.approx([-3, 2 - 1j, 2 + 1j])
+
+
+def test_where_doubles_do_not_reach_guesses_lie_on_circles_of_the_right_size() -> None:
+    """x^4 - 2^3000 x^2 + 1: two roots of size 2^1500, two of size 2^-1500."""
+    found = guess_roots(fmpz_poly([1, 0, -(1 << 3000), 0, 1]))
+    assert sorted(exponent for _, exponent in found) == [-1500, -1500, 1500, 1500]
+    assert [abs(u) for u, _ in found] == pytest.approx([1] * 4)
 
 
 @pytest.mark.parametrize(
