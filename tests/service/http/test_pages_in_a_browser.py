@@ -1,4 +1,4 @@
-"""The pages as a browser shows them: nothing from elsewhere, no error, nothing cut off, the caution in sight."""
+"""The pages as a browser shows them: nothing from elsewhere, no error, nothing cut off, the caution there."""
 
 import os
 import shutil
