@@ -1,7 +1,7 @@
 """How long the whole ``POST /v1/stability`` without curve takes, beside what a person would otherwise write.
 
 Run from the project's folder: ``python -m tests.benchmarks.answers``. Every request is a new random
-loop; all contestants answer the same loops, in turn, so that a busy machine burdens all of them alike.
+loop; all contestants answer the same loops, each of them all loops in a row.
 """
 
 import os
@@ -60,21 +60,22 @@ def _report(console: Console, rounds: int, seed: int, services: Mapping[str, Ask
 
 
 def measure(degree: int, rounds: int, draw: Random, services: Mapping[str, Ask]) -> Times:
-    """Time services, scripts and phases on ``rounds`` random loops, after one that is not counted."""
+    """Time services, scripts and phases on ``rounds`` random loops each, after one that is not counted.
+
+    Every contestant takes all loops in a row, as it would in service: one that fills the processor's
+    caches would otherwise be paid for by the next.
+    """
+    loops = [
+        {gain: random_body(draw, degree, gain=gain) for gain in (False, True)} for _ in range(rounds + 1)
+    ]
     times: Times = {}
-    for number in range(rounds + 1):
-        bodies = {gain: random_body(draw, degree, gain=gain) for gain in (False, True)}
-        taken = {
-            f"{name}{' with gain' if gain else ''}": _seconds(ask, body)
-            for name, ask in services.items()
-            for gain, body in bodies.items()
-        }
-        taken |= {name: _seconds(script, bodies[False]) for name, script in SCRIPTS.items()}
-        taken |= _phase_seconds(bodies[True])
-        if number:
-            for name, seconds in taken.items():
-                times.setdefault(name, []).append(seconds)
-    return times
+    for name, ask in services.items():
+        for gain, suffix in ((False, ""), (True, " with gain")):
+            times[f"{name}{suffix}"] = [_seconds(ask, bodies[gain]) for bodies in loops][1:]
+    for name, script in SCRIPTS.items():
+        times[name] = [_seconds(script, bodies[False]) for bodies in loops][1:]
+    phases = [_phase_seconds(bodies[True]) for bodies in loops][1:]
+    return times | {name: [taken[name] for taken in phases] for name in _PHASES}
 
 
 def _seconds(ask: Ask, body: bytes) -> float:
