@@ -13,6 +13,7 @@ from service.command.local import limits_in_force
 SHARED_MEMORY = Path("/dev/shm")  # noqa: S108 (heartbeats only, in files gunicorn unlinks at once)
 GRACEFUL_SECONDS = 8
 HIGHEST_PORT = 65535
+LONGEST_ADDRESS = 8190  # bytes of a request line, gunicorn's most: a whole question may stand in an address
 
 APPLICATION = "service:create_app()"
 
@@ -65,6 +66,7 @@ def gunicorn_arguments(bind: Address, workers: int) -> list[str]:
         f"--bind=[{host}]:{port}" if ":" in host else f"--bind={host}:{port}",
         f"--workers={workers}",
         f"--graceful-timeout={GRACEFUL_SECONDS}",
+        f"--limit-request-line={LONGEST_ADDRESS}",
         "--preload",
         "--no-control-socket",
         *heartbeats,

@@ -74,6 +74,7 @@ def test_gunicorn_gets_the_application_the_address_and_the_workers() -> None:
     arguments = gunicorn_arguments(("0.0.0.0", 8080), 3)  # noqa: S104 (an argument, nothing listens)
     assert arguments[-1] == "service:create_app()"
     assert {"--bind=0.0.0.0:8080", "--workers=3", "--no-control-socket"} <= set(arguments)
+    assert "--limit-request-line=8190" in arguments
 
 
 def test_an_ipv6_host_keeps_its_brackets() -> None:
