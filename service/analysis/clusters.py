@@ -1,9 +1,10 @@
-"""Moving crowded guesses of polynomial roots apart, at any precision asked for. Nothing is proven here.
+"""Moving crowded guesses of polynomial roots apart, at any precision asked for.
 
 All points repel each other while Newton's method attracts them (L. W. Ehrlich, 1967; O. Aberth, 1973).
 That is slow where roots cluster, so a cluster is looked at through the Taylor polynomial about its
 centre: the centre moves to the mean of the cluster quadratically, and the polynomial's lowest terms,
-levelled to the cluster's own scale, give new guesses in floating point.
+levelled to the cluster's own scale, give new guesses in floating point. No move proves anything; what a
+guess is worth tell ``proven_radius`` and ``joined``, on which ``enclosures`` builds its proof.
 """
 
 import math
@@ -106,7 +107,7 @@ def joined(points: Sequence[acb], radii: Sequence[arb]) -> list[list[int]]:
 def _suspects(points: Sequence[acb], radii: Sequence[arb]) -> Iterator[tuple[int, int]]:
     """Yield the pairs that double precision, with a margin for its rounding, cannot tell to be disjoint."""
     centres = np.array([complex(z) for z in points])
-    reach = np.array([float(r) for r in radii]) * (1 + 1e-9) + 1e-12 * np.abs(centres)
+    reach = np.array([float(r) for r in radii]) * (1 + 1e-9) + 1e-12 * np.abs(centres) + 1e-300
     with np.errstate(invalid="ignore"):
         near = ~(np.abs(centres[:, None] - centres[None, :]) > reach[:, None] + reach[None, :])
     yield from ((int(i), int(j)) for i, j in np.argwhere(np.triu(near, 1)))

@@ -67,7 +67,7 @@ def enclose_roots(p: fmpz_poly, bits: int) -> list[acb]:
         precision *= 2
     if found is None:
         raise TooHard(
-            f"The closed-loop poles lie so close together that {precision} bits do not tell them apart."
+            f"Roots of this loop lie so close together that {precision} bits do not tell them apart."
         )
     with working(precision):
         return [ball for disc in found for ball in disc.balls()]

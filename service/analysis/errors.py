@@ -3,7 +3,7 @@
 AnalysisError
     InvalidLoop      the loop is none (a denominator that is zero)
     TooLarge         multiplied out, a polynomial exceeds its limit of bits
-    TooHard          the closed-loop poles cannot be told apart at the highest precision
+    TooHard          roots cannot be told apart at the highest precision
     OutOfRange       a value lies beyond the range of doubles
     CountsDisagree   the two counts of a band differ: a defect of the engine, never a verdict
 """

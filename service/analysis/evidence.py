@@ -18,6 +18,9 @@ from service.analysis.precision import working
 from service.analysis.roots import PositiveRoot, by_frequency
 from service.analysis.survey import Survey
 
+Quotient = tuple[fmpz_poly, fmpz_poly]
+"""A rational function: numerator, denominator."""
+
 _SQUARE_BITS: Final = 192
 _SPARE: Final = 1 << 16  # by how much the bracket of a gain is to be narrower than the room it has
 
@@ -60,7 +63,7 @@ def _gain_polynomial(edge: RawEdge) -> tuple[str, ...] | None:
 
 def _square_cells(survey: Survey) -> dict[int, Cell]:
     """Return an interval for each positive squared frequency, by the identity of its root."""
-    view = AxisView.of(survey.loop.numerator, survey.loop.denominator)
+    gain = _gain_in_square(AxisView.of(survey.loop.numerator, survey.loop.denominator))
     wanted = [
         (place, cell if edge.gain.rational is None and len(edge.places) == 1 else None)
         for edge, cell in zip(survey.edges, survey.cells, strict=True)
@@ -68,30 +71,36 @@ def _square_cells(survey: Survey) -> dict[int, Cell]:
         if isinstance(place, PositiveRoot)
     ]
     wanted.sort(key=lambda pair: by_frequency(pair[0]))
-    makers = [partial(_square_cell, view, root, cell) for root, cell in wanted]
+    makers = [partial(_square_cell, gain, root, cell) for root, cell in wanted]
     cells = separate_cells(makers, _SQUARE_BITS)
     return {id(root): cell for (root, _), cell in zip(wanted, cells, strict=True)}
 
 
-def _square_cell(view: AxisView, root: PositiveRoot, gain_cell: Cell | None, bits: int) -> Cell:
+def _gain_in_square(view: AxisView) -> Quotient:
+    """Return K = -(De Ne + x Do No)/(Ne^2 + x No^2) as polynomials in x."""
+    x = fmpz_poly([0, 1])
+    ne, no = view.numerator_even, view.numerator_odd
+    return -(view.denominator_even * ne + x * view.denominator_odd * no), ne * ne + x * no * no
+
+
+def _square_cell(gain: Quotient, root: PositiveRoot, gain_cell: Cell | None, bits: int) -> Cell:
     x = root.rational
     if x is not None:
         return x, x
     while True:
         cell = dyadic_cell(root.ball, bits)
-        if gain_cell is None or _brackets(view, cell, gain_cell, bits):
+        if gain_cell is None or _brackets(gain, cell, gain_cell, bits):
             return cell
         bits *= 2
 
 
-def _brackets(view: AxisView, square: Cell, gain: Cell, bits: int) -> bool:
-    """Whether interval arithmetic puts K = -(De Ne + x Do No)/(Ne^2 + x No^2) well inside its interval."""
-    ne, no = view.numerator_even, view.numerator_odd
+def _brackets(gain: Quotient, square: Cell, gain_cell: Cell, bits: int) -> bool:
+    """Whether interval arithmetic puts the gain well inside its interval."""
+    above, below = gain
     with working(4 * bits):
         x = arb(square[0]).union(arb(square[1]))
-        above = view.denominator_even * ne + fmpz_poly([0, 1]) * view.denominator_odd * no
-        found = -above(x) / (ne * ne + fmpz_poly([0, 1]) * no * no)(x)
+        found = above(x) / below(x)
         if not found.is_finite():
             return False
         spare = found.rad() * _SPARE
-        return bool(arb(gain[0]) < found.mid() - spare and found.mid() + spare < arb(gain[1]))
+        return bool(arb(gain_cell[0]) < found.mid() - spare and found.mid() + spare < arb(gain_cell[1]))

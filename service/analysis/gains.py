@@ -139,10 +139,10 @@ class Gain:
     @cached_property
     def minimal_polynomial(self) -> fmpz_poly:
         """The primitive irreducible integer polynomial of this gain (ascending powers of K)."""
-        exact = self.rational
-        if isinstance(self._source, fmpq) or exact is not None:
-            value = fmpq(0) if exact is None else exact
-            return fmpz_poly([-value.numer(), value.denom()])
+        if isinstance(self._source, fmpq):
+            return _linear(self._source)
+        if self.rational is not None:
+            return _linear(self.rational)
         gains, root = self._source
         return gains.minimal_polynomial(gains.factor_of(root))
 
@@ -168,6 +168,10 @@ class Gain:
         if isinstance(self._source, fmpq):
             return sign(self._source)
         return 1 if self.ball(8) > 0 else -1
+
+
+def _linear(root: fmpq) -> fmpz_poly:
+    return fmpz_poly([-root.numer(), root.denom()])
 
 
 def _evaluated(gains: GainMap, root: PositiveRoot, bits: int) -> arb:

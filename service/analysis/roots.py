@@ -50,7 +50,7 @@ class PositiveRoot:
     __slots__ = ("_ball", "_derivative", "_enclosures", "_settled", "high", "low", "polynomial")
 
     def __init__(
-        self, polynomial: fmpz_poly, low: fmpq, high: fmpq, enclosures: "Enclosures | None" = None
+        self, polynomial: fmpz_poly, low: fmpq, high: fmpq, enclosures: Enclosures | None = None
     ) -> None:
         self.polynomial = polynomial
         self._enclosures = enclosures or Enclosures(polynomial)
@@ -92,7 +92,7 @@ class PositiveRoot:
         halvings = 0
         while (known := accurate_bits(ball)) < bits:
             if halvings == _MOST_HALVINGS:
-                ball = self._among_enclosures(max(bits, _ENCLOSED_BITS))
+                ball = self._among_enclosures(max(bits, _ENCLOSED_BITS) + 8)
                 break
             with working(2 * known + headroom):
                 narrower = self._newton(ball)

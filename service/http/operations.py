@@ -2,17 +2,13 @@
 
 from typing import Any, Final
 
+from service.analysis.cautions import GENERAL
 from service.exchange import answer_document
 from service.http.problem_types import PROBLEM_TYPES
 
 TITLE: Final = "Halfturn"
 
-# The words of the caution every answer carries; a test holds the two together.
-CAUTION: Final = (
-    "The verdict is about the linear model sent. Saturation, friction, quantisation and unmodelled dynamics "
-    "are outside it. It is not a safety function: the standards for functional safety that apply to the "
-    "plant, local codes and the responsible licensed engineer decide."
-)
+CAUTION: Final = GENERAL.text
 
 DESCRIPTION: Final = (
     "For which gains is a feedback loop stable, and how near is the gain in service to the edge? A "

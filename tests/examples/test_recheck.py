@@ -278,13 +278,19 @@ def texts(low: Fraction, high: Fraction) -> list[str]:
     return [str(low), str(high)]
 
 
-@pytest.mark.parametrize("share", [Fraction(-1), Fraction(1), Fraction(1, 2)], ids=["down", "up", "by half"])
-@pytest.mark.parametrize("kind", ["gain_between", "omega_squared_between"])
-def test_no_shifted_interval_passes(desk: Desk, kind: str, share: Fraction) -> None:
+def an_interval(kind: str) -> tuple[Any, Any, Any, Any]:
+    """Give a question, its answer, and where one irrational interval of the evidence stands in it."""
     question = asked(CASES["irrational gains"])
     answer = answered(question)
     evidence = answer["evidence"]["edges"][-1]
     holder, key = (evidence, kind) if kind == "gain_between" else (evidence[kind], 0)
+    return question, answer, holder, key
+
+
+@pytest.mark.parametrize("share", [Fraction(-1), Fraction(1), Fraction(1, 2)], ids=["down", "up", "by half"])
+@pytest.mark.parametrize("kind", ["gain_between", "omega_squared_between"])
+def test_no_shifted_interval_passes(desk: Desk, kind: str, share: Fraction) -> None:
+    question, answer, holder, key = an_interval(kind)
     low, high = parsed(holder[key])
     assert low < high
     holder[key] = texts(low + (high - low) * share, high + (high - low) * share)
@@ -294,10 +300,7 @@ def test_no_shifted_interval_passes(desk: Desk, kind: str, share: Fraction) -> N
 @pytest.mark.parametrize("times", [2, 3, 1 << 70], ids=["twice", "three times", "70 bits"])
 @pytest.mark.parametrize("kind", ["gain_between", "omega_squared_between"])
 def test_no_wider_interval_passes(desk: Desk, kind: str, times: int) -> None:
-    question = asked(CASES["irrational gains"])
-    answer = answered(question)
-    evidence = answer["evidence"]["edges"][-1]
-    holder, key = (evidence, kind) if kind == "gain_between" else (evidence[kind], 0)
+    question, answer, holder, key = an_interval(kind)
     low, high = parsed(holder[key])
     holder[key] = texts(low, low + (high - low) * times)
     assert desk.code(question, answer) == FAILS
